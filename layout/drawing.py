@@ -1,6 +1,7 @@
 """What a drawing is: frozen primitives in millimetres, each with a role, compared with ==.
 
-Owns the primitives; composite shapes are `shapes`, changes are `operations`, ink is the writers'. Imports `geometry` only.
+Owns the primitives; composite shapes are `shapes`, changes are `operations`, ink is the writers'. Imports `geometry`
+only.
 """
 
 from __future__ import annotations

@@ -109,9 +109,7 @@ class Box(NamedTuple):
 
     def holds(self, p: Point, slack_mm: float = 0.0) -> bool:
         """Whether the point lies in the box or within `slack_mm` of it."""
-        return (
-            self.x0 - slack_mm <= p[0] <= self.x1 + slack_mm and self.y0 - slack_mm <= p[1] <= self.y1 + slack_mm
-        )
+        return self.x0 - slack_mm <= p[0] <= self.x1 + slack_mm and self.y0 - slack_mm <= p[1] <= self.y1 + slack_mm
 
     def meets(self, other: Box) -> bool:
         """Whether the two share a point."""
@@ -147,8 +145,9 @@ def cos_sin(angle_deg: float) -> tuple[float, float]:
 
 
 def bearing_deg(v: Point) -> float:
-    """Direction of a vector, 0 up to 360, counter-clockwise from +x; 0 for the null vector."""
-    return math.degrees(math.atan2(v[1], v[0])) % 360.0 if v != (0.0, 0.0) else 0.0
+    """Direction of a vector, from 0 up to but not 360, counter-clockwise from +x; 0 for the null vector."""
+    # The second remainder is for directions so little below 0 that the first comes out as 360 itself.
+    return math.degrees(math.atan2(v[1], v[0])) % 360.0 % 360.0 if v != (0.0, 0.0) else 0.0
 
 
 def along(start: Point, angle_deg: float, distance_mm: float) -> Point:
@@ -217,8 +216,7 @@ class Cubic:
 
     def _blossom(self, a: float, b: float, c: float) -> Point:
         p, q, r = (
-            _between(u, v, a)
-            for u, v in ((self.start, self.first), (self.first, self.second), (self.second, self.end))
+            _between(u, v, a) for u, v in ((self.start, self.first), (self.first, self.second), (self.second, self.end))
         )
         return _between(_between(p, q, b), _between(q, r, b), c)
 
@@ -230,7 +228,7 @@ class Cubic:
         """Parameters inside 0..1 where the segment turns back in x or in y."""
         found: list[float] = []
         for axis in (0, 1):
-            c0, c1, c2, c3 = self._powers(axis)
+            _c0, c1, c2, c3 = self._powers(axis)
             found += _real_roots([3 * c3, 2 * c2, c1])
         return _inside(found)
 
@@ -275,6 +273,12 @@ class Arc:
     def end(self) -> Point:
         """The last point."""
         return self._point(self.start_deg + self.sweep_deg)
+
+    @property
+    def reach_mm(self) -> float:
+        """The longer half-axis of the ellipse, which after an uneven map is longer than both u and v."""
+        (a, b), (c, d) = self.u, self.v
+        return (math.hypot(a + d, b - c) + math.hypot(a - d, b + c)) / 2
 
     def _point(self, angle_deg: float) -> Point:
         c, s = cos_sin(angle_deg)
@@ -324,7 +328,7 @@ class Arc:
 
     def pieces(self, tolerance_mm: float) -> int:
         """How many chords keep within the tolerance."""
-        reach = max(math.hypot(*self.u), math.hypot(*self.v))
+        reach = self.reach_mm
         if tolerance_mm >= reach:
             return max(1, math.ceil(abs(self.sweep_deg) / 90.0))
         step = 2 * math.degrees(math.acos(1 - tolerance_mm / reach))
@@ -388,9 +392,8 @@ def arc_as_cubics(arc: Arc, tolerance_mm: float) -> tuple[Cubic, ...]:
     One cubic over an angle θ departs from a circle of radius r by at most about 4/27 · sin⁶(θ/4) / cos²(θ/4) · r
     (the usual midpoint-fitting cubic, control length 4/3 · tan(θ/4)).
     """
-    reach = max(math.hypot(*arc.u), math.hypot(*arc.v))
     count = max(1, math.ceil(abs(arc.sweep_deg) / 90.0))
-    while _cubic_error(abs(arc.sweep_deg) / count) * reach > tolerance_mm:
+    while _cubic_error(abs(arc.sweep_deg) / count) * arc.reach_mm > tolerance_mm:
         count += 1
     return tuple(_arc_cubic(arc.part(k / count, (k + 1) / count)) for k in range(count))
 
@@ -409,6 +412,4 @@ def _arc_cubic(arc: Arc) -> Cubic:
         return (arc.v[0] * c - arc.u[0] * s, arc.v[1] * c - arc.u[1] * s)
 
     t0, t1 = tangent(arc.start_deg), tangent(arc.start_deg + arc.sweep_deg)
-    return Cubic(
-        start, (start[0] + k * t0[0], start[1] + k * t0[1]), (end[0] - k * t1[0], end[1] - k * t1[1]), end
-    )
+    return Cubic(start, (start[0] + k * t0[0], start[1] + k * t0[1]), (end[0] - k * t1[0], end[1] - k * t1[1]), end)

@@ -33,8 +33,8 @@ def em_mm(height_mm: float) -> float:
 
 @cache
 def _metrics(bold: bool) -> tuple[dict[int, str], dict[str, Any], int]:
-    font = TTFont(face_path(bold), lazy=True)
-    return font.getBestCmap(), font["hmtx"].metrics, font["head"].unitsPerEm
+    with TTFont(face_path(bold), lazy=True) as font:
+        return font.getBestCmap(), font["hmtx"].metrics, font["head"].unitsPerEm
 
 
 @cache
@@ -56,17 +56,22 @@ def text_width_mm(text: str, height_mm: float, bold: bool = False) -> float:
 def wrap(text: str, width_mm: float, height_mm: float, bold: bool = False) -> list[str]:
     """The text in lines no wider than `width_mm`; a word that is wider by itself is broken."""
     lines: list[str] = []
+    space, taken = text_width_mm(" ", height_mm, bold), 0.0
     for word in text.split():
         for part in _broken(word, width_mm, height_mm, bold):
-            joined = f"{lines[-1]} {part}" if lines else part
-            if lines and text_width_mm(joined, height_mm, bold) <= width_mm:
-                lines[-1] = joined
+            width = text_width_mm(part, height_mm, bold)
+            if lines and taken + space + width <= width_mm:
+                lines[-1] += f" {part}"
+                taken += space + width
             else:
                 lines.append(part)
+                taken = width
     return lines or [""]
 
 
 def _broken(word: str, width_mm: float, height_mm: float, bold: bool) -> list[str]:
+    if text_width_mm(word, height_mm, bold) <= width_mm:
+        return [word]
     parts, part = [], ""
     for character in word:
         if part and text_width_mm(part + character, height_mm, bold) > width_mm:

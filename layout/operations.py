@@ -5,6 +5,7 @@ Imports `geometry`, `drawing` and `lettering` only.
 
 from __future__ import annotations
 
+import itertools
 import math
 
 from layout.drawing import Drawing, Fill, Primitive, Stroke, Text
@@ -25,6 +26,8 @@ from layout.lettering import FALL, RISE, text_width_mm
 
 # Chords of a solid shape's edge stay this near to it when it is clipped.
 FILL_TOLERANCE_MM = 0.005
+# Ends of a curve this near to each other meet.
+SAME_POINT_MM = 1e-6
 
 
 def transform(drawing: Drawing, m: Affine) -> Drawing:
@@ -88,7 +91,9 @@ def polylines(drawing: Drawing, tolerance_mm: float) -> list[list[Point]]:
 
 
 def clip(drawing: Drawing, box: Box) -> Drawing:
-    """What lies in the box: strokes cut exactly, solid shapes within FILL_TOLERANCE_MM, lettering whole where it shows."""
+    """What lies in the box: strokes cut exactly, solid shapes within FILL_TOLERANCE_MM, lettering whole where it
+    shows.
+    """
     kept: list[Primitive] = []
     for item in drawing.items:
         if primitive_bounds(item).meets(box):
@@ -107,7 +112,17 @@ def _clipped(item: Primitive, box: Box) -> list[Primitive]:
         case Stroke(curve, role, closed):
             runs = clip_curve(curve, box)
             whole = len(runs) == 1 and runs[0] == curve
+            if closed and not whole:
+                runs = _joined_at_start(runs, curve)
             return [Stroke(run, role, closed and whole) for run in runs]
+
+
+def _joined_at_start(runs: list[Curve], curve: Curve) -> list[Curve]:
+    """The runs of a closed curve, the last one joined to the first where both meet at the curve's start."""
+    if len(runs) < 2 or math.dist(runs[0][0].start, curve[0].start) > SAME_POINT_MM:
+        return runs
+    meets = math.dist(runs[-1][-1].end, runs[0][0].start) <= SAME_POINT_MM
+    return [runs[-1] + runs[0], *runs[1:-1]] if meets else runs
 
 
 def clip_curve(curve: Curve, box: Box) -> list[Curve]:
@@ -116,7 +131,7 @@ def clip_curve(curve: Curve, box: Box) -> list[Curve]:
     open_run = False
     for segment in curve:
         cuts = [0.0, *_box_crossings(segment, box), 1.0]
-        for t0, t1 in zip(cuts, cuts[1:], strict=False):
+        for t0, t1 in itertools.pairwise(cuts):
             inside = box.holds(segment.at((t0 + t1) / 2), 1e-9)
             if inside:
                 stretch = segment if (t0, t1) == (0.0, 1.0) else segment.part(t0, t1)

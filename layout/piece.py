@@ -1,4 +1,5 @@
-"""A piece: one drawing at true size and how it wants to reach the paper. The form in which makers of drawings hand them over.
+"""A piece: one drawing at true size and how it wants to reach the paper. The form in which makers of drawings hand
+them over.
 
 Imports `drawing` and `geometry` only.
 """

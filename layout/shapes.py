@@ -5,6 +5,7 @@ Imports `geometry`, `drawing` and `lettering` only.
 
 from __future__ import annotations
 
+import itertools
 import math
 from collections.abc import Sequence
 
@@ -28,7 +29,7 @@ def polyline(points: Sequence[Point], role: Role, closed: bool = False) -> Strok
 
 def chain(points: Sequence[Point]) -> Curve:
     """The open curve through the points."""
-    return tuple(Line(p, q) for p, q in zip(points, points[1:], strict=False))
+    return tuple(Line(p, q) for p, q in itertools.pairwise(points))
 
 
 def polygon_curve(points: Sequence[Point]) -> Curve:
