@@ -1,0 +1,200 @@
+"""Angle cards: nets that are cut, folded and stood on the sightline so that one edge leans with the bit; and bevel
+cards.
+
+Owns the nets as geometry, apart from how they are drawn. Imports `assembly`, `template`'s wording and layout's ground.
+
+A net in its own mm: the wall's foot is the fold y = 0, from x = 0 to x = FOOT_MM; x = 0 is the fold between wall and
+buttress; the tab hangs below y = 0. Both folds go back by 90°, the printed side out: then wall and buttress stand
+square to the face and to each other on the straight line that was y = 0, and the tab lies on the face behind the wall.
+The leaning edge runs from (FOOT_MM, 0) up and, for a positive lean, to the right.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterable, Iterator
+from dataclasses import dataclass
+
+from jigs.assembly import Assembly
+from jigs.legs import Leg
+from jigs.quantities import format_angle
+from layout.drawing import Drawing, Role, Text, gather
+from layout.geometry import Point, along
+from layout.lettering import shortened, wrap
+from layout.piece import Piece
+from layout.shapes import arrow, arrow_head, line, paragraph, polyline
+
+# Angles nearer than this share a card; a foot 500 mm away moves by less than 0.1 mm.
+SAME_ANGLE_DEG = 0.01
+# The wall's foot and height, the buttress's depth and the tab's: a card that stands, and small enough for two on a
+# page.
+FOOT_MM, HEIGHT_MM, BUTTRESS_MM, TAB_MM = 56.0, 100.0, 40.0, 15.0
+# The least that is left of the wall's top edge where it leans back over its own foot: room for the words.
+_TOP_MM = 48.0
+# A bevel card's base line and blade line.
+BASE_MM, BLADE_MM = 110.0, 96.0
+
+
+@dataclass(frozen=True)
+class Net:
+    """A card as an object: its panels and folds, flat, in mm (axes in the module's docstring).
+
+    `lean_deg` is signed: positive where the edge leans to the right as printed.
+    """
+
+    lean_deg: float
+    wall: tuple[Point, ...]
+    buttress: tuple[Point, ...]
+    tab: tuple[Point, ...]
+    leaning_edge: tuple[Point, Point]
+    wall_tab_fold: tuple[Point, Point]
+    wall_buttress_fold: tuple[Point, Point]
+
+
+def net(lean_deg: float) -> Net:
+    """The net of a card whose edge leans by `lean_deg` from square, between about -60 and 60.
+
+    A wall that leans back is made longer at the foot so that its top edge keeps some width.
+    """
+    run = HEIGHT_MM * math.tan(math.radians(lean_deg))
+    foot = max(FOOT_MM, _TOP_MM - run)
+    base, top = (foot, 0.0), (foot + run, HEIGHT_MM)
+    return Net(
+        lean_deg=lean_deg,
+        wall=((0.0, 0.0), base, top, (0.0, HEIGHT_MM)),
+        buttress=((0.0, 0.0), (0.0, HEIGHT_MM), (-BUTTRESS_MM, 0.0)),
+        tab=((0.0, 0.0), (4.0, -TAB_MM), (foot - 4.0, -TAB_MM), (foot, 0.0)),
+        leaning_edge=(base, top),
+        wall_tab_fold=((0.0, 0.0), base),
+        wall_buttress_fold=((0.0, 0.0), (0.0, HEIGHT_MM)),
+    )
+
+
+@dataclass(frozen=True)
+class Card:
+    """One card to be made: which angle, for which legs, on which line it stands, and how it leans.
+
+    A card always stands with its foot arrow to the right as printed, on the inner side of the mortise, where there is
+    seat to stand on. `lean_deg` is the bit's: from the underside the bit leans with the arrow (positive for a leg that
+    leans outward), from the top against it.
+    """
+
+    kind: str
+    lean_deg: float
+    legs: tuple[str, ...]
+    line: str
+    toward: str
+
+
+def cards(assembly: Assembly) -> tuple[Card, ...]:
+    """One card for each different resultant, splay and rake in the seat frame, in the order of the legs."""
+    shank = 1.0 if assembly.drilled == "underside" else -1.0
+    kinds = (
+        ("resultant", "the sightline", "FOOT", [leg.drill.resultant_deg for leg in assembly.legs]),
+        ("splay", "the across line", "OWN SIDE", [leg.drill.splay_deg for leg in assembly.legs]),
+        ("rake", "the fore-and-aft line", "OWN END", [leg.drill.rake_deg for leg in assembly.legs]),
+    )
+    made: list[Card] = []
+    for kind, on, toward, angles in kinds:
+        for angle, legs in _shared(assembly.legs, angles):
+            made.append(Card(kind, shank * angle, tuple(leg.name for leg in legs), on, toward))
+    return tuple(made)
+
+
+def _shared(legs: Iterable[Leg], angles: list[float]) -> list[tuple[float, list[Leg]]]:
+    """Legs by angle: those within SAME_ANGLE_DEG of a first one share its card."""
+    groups: list[tuple[float, list[Leg]]] = []
+    for leg, angle in zip(legs, angles, strict=True):
+        for first, members in groups:
+            if abs(first - angle) <= SAME_ANGLE_DEG:
+                members.append(leg)
+                break
+        else:
+            groups.append((angle, [leg]))
+    return groups
+
+
+def card_pieces(assembly: Assembly) -> tuple[Piece, ...]:
+    """Every card of the furniture, standing ones first, then the angles to set a sliding bevel to."""
+    standing = [_card_piece(assembly, number, card) for number, card in enumerate(cards(assembly), 1)]
+    groups = _shared(assembly.legs, [leg.drill.resultant_deg for leg in assembly.legs])
+    flat = [_bevel_piece(assembly, number, angle, legs) for number, (angle, legs) in enumerate(groups, 1)]
+    return (*standing, *flat)
+
+
+def _card_piece(assembly: Assembly, number: int, card: Card) -> Piece:
+    shape = net(card.lean_deg)
+    drawing = gather([*_net_lines(shape), *_wall_words(assembly, card, shape), _tab_words(shape)])
+    notice = f"for boring from the {assembly.drilled.upper()}"
+    return Piece(f"card {number} {card.kind}", "cards", "Angle cards", drawing, "pack", notice, stock="card")
+
+
+def _net_lines(shape: Net) -> Iterator[Drawing]:
+    outline = (*shape.wall[1:], *shape.buttress[2:], *shape.tab[:3])
+    yield Drawing((polyline(outline, Role.CUT, closed=True),))
+    yield Drawing((line(*shape.wall_tab_fold, Role.FOLD), line(*shape.wall_buttress_fold, Role.FOLD)))
+
+
+def _wall_words(assembly: Assembly, card: Card, shape: Net) -> Iterator[Drawing]:
+    """Words on the wall: the angle large, what it is, whose it is, and the arrow that must agree with the template's.
+    """
+    left, width = 4.0, min(shape.leaning_edge[0][0], shape.leaning_edge[1][0]) - 8.0
+    y = HEIGHT_MM - 15.0
+    yield Drawing((Text((left, y), format_angle(abs(card.lean_deg)), 8.0, bold=True),))
+    if card.kind == "resultant":
+        yield Drawing((Text((left, y - 7.0), f"bevel {format_angle(90.0 - abs(card.lean_deg))}", 3.5),))
+        y -= 7.0
+    what = {"resultant": "lean of the bit", "splay": "splay of the bit", "rake": "rake of the bit"}[card.kind]
+    block, y = paragraph((left, y - 4.0), what, 3.5, width, bold=True)
+    yield block
+    names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 5 * width, 2.5), 2.5, width)
+    yield names
+    for words in (
+        f"stand the fold on {card.line}, on the {assembly.drilled}",
+        "the edge on the right leans with the bit",
+    ):
+        block, y = paragraph((left, y - 2.0), words, 2.5, width)
+        yield block
+    yield _foot_arrow(card, shape)
+    yield _buttress_words()
+
+
+def _buttress_words() -> Drawing:
+    """Up along the fold, on the buttress's own side of it."""
+    return Drawing((Text((-4.0, 30.0), "fold back, square", 2.5, angle_deg=90.0),))
+
+
+def _foot_arrow(card: Card, shape: Net) -> Drawing:
+    """Which way the foot (or the leg's own side or end) lies when the card stands right: to the right as printed."""
+    low, foot = 6.0, shape.wall_tab_fold[1][0]
+    shaft = arrow((6.0, low), (foot - 6.0, low), 6.0, Role.NOTE)
+    return shaft + Drawing((Text((foot / 2, low + 3.0), card.toward, 3.5, align="centre", bold=True),))
+
+
+def _tab_words(shape: Net) -> Drawing:
+    middle = shape.wall_tab_fold[1][0] / 2
+    return Drawing((Text((middle, -9.0), "fold back, tape to the face", 2.5, align="centre"),))
+
+
+def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: list[Leg]) -> Piece:
+    """A plain angle: the bevel's stock along the base line, its blade along the other."""
+    bevel = 90.0 - resultant_deg
+    corner = (0.0, 0.0)
+    blade = along(corner, bevel, BLADE_MM)
+    frame = ((-8.0, -14.0), (BASE_MM + 6.0, -14.0), (BASE_MM + 6.0, BLADE_MM + 6.0), (-8.0, BLADE_MM + 6.0))
+    names = shortened(", ".join(leg.name for leg in legs), 70.0, 2.5)
+    drawing = gather(
+        [
+            polyline(frame, Role.CUT, closed=True),
+            line(corner, (BASE_MM, 0.0), Role.SET_OUT),
+            line(corner, blade, Role.SET_OUT),
+            Text(along(along(corner, bevel, 30.0), bevel - 90.0, 4.5), "blade along this line", 2.5, angle_deg=bevel),
+            Text((BASE_MM, -6.0), "stock of the bevel along this line, which is the face", 2.5, align="right"),
+            Text((50.0, 42.0), f"bevel {format_angle(bevel)}", 7.0, bold=True),
+            Text((50.0, 32.0), f"lean {format_angle(resultant_deg)} from square", 3.5),
+            *(Text((50.0, 24.0 - 5.0 * k), words, 2.5) for k, words in enumerate(wrap(names, 66.0, 2.5))),
+            arrow_head(blade, bevel, 4.0, Role.SET_OUT),
+        ]
+    )
+    notice = f"for boring from the {assembly.drilled.upper()}"
+    return Piece(f"bevel {number}", "cards", "Angle cards", drawing, "pack", notice, stock="card")

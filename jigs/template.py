@@ -1,0 +1,260 @@
+"""The seat template: outline, centre line, front, and for each leg what to prick, bore and sight by, on either face.
+
+A face's drawing is in that face's own coordinates as it is seen with the front edge toward you: plan coordinates for
+the top, plan coordinates mirrored (X = -x) for the underside. Imports `assembly`, `bores` and layout's ground.
+"""
+
+from __future__ import annotations
+
+import math
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+from jigs.assembly import Assembly, Face, other_face
+from jigs.bores import bored_mm, mouth_mm, sections
+from jigs.legs import Leg
+from jigs.quantities import format_angle
+from jigs.spec import Mortise
+from layout.drawing import Drawing, Primitive, Role, Stroke, Text, gather
+from layout.geometry import Affine, Box, Curve, Point, along, bearing_deg, flatten, mapped
+from layout.lettering import text_width_mm
+from layout.operations import polylines
+from layout.piece import Piece
+from layout.room import Room
+from layout.shapes import LINE_PITCH, arrow, circle, cross, ellipse_curve, line
+
+# How far the centre line runs out past the seat, and a sightline past its edge, arrow's head included.
+CENTRE_RUN_MM, SIGHTLINE_RUN_MM = 8.0, 16.0
+# How far a sightline runs back from the mortise's centre, away from the foot: a card stands there.
+SIGHTLINE_BACK_MM = 75.0
+# Chords of the outline used to find room for lettering.
+_ROOM_TOLERANCE_MM = 0.5
+# Directions of the grain by name, in degrees from the fore-and-aft line.
+GRAIN_DEG = {"fore-and-aft": 0.0, "across": 90.0}
+# No more proof lengths than a maker will measure.
+MOST_PROOFS = 8
+
+
+@dataclass(frozen=True)
+class Lettered:
+    """A block of lines to be set where there is room: words, capital height, bold."""
+
+    lines: tuple[tuple[str, float, bool], ...]
+
+    @property
+    def width_mm(self) -> float:
+        """Of the widest line."""
+        return max(text_width_mm(words, height, bold) for words, height, bold in self.lines)
+
+    @property
+    def height_mm(self) -> float:
+        """Of all lines together."""
+        return sum(height * LINE_PITCH for _, height, _ in self.lines)
+
+    def set_in(self, box: Box) -> Drawing:
+        """The lines in a box, centred, from its top down."""
+        x, y = box.centre[0], box.y1
+        drawn = []
+        for words, height, bold in self.lines:
+            y -= height * LINE_PITCH
+            drawn.append(Text((x, y + 0.45 * height), words, height, align="centre", bold=bold, over=True))
+        return Drawing(tuple(drawn))
+
+
+def face_map(face: Face) -> Affine:
+    """From plan coordinates to a face as it is seen: the underside is mirrored."""
+    return Affine.mirror_x() if face == "underside" else Affine.identity()
+
+
+def template(assembly: Assembly, face: Face) -> Piece:
+    """The template of one face, front edge toward you."""
+    seen = face_map(face)
+    outline = mapped(assembly.blank.curve, seen)
+    lines = gather(_lines(assembly, face, outline))
+    room = _room(outline, lines, [seen.point(leg.on_face(face)) for leg in assembly.legs])
+    words = gather(_words(assembly, face, room))
+    points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in assembly.legs)
+    title = f"Seat template, {face}"
+    notice = f"{face.upper()} · front edge toward you" + _sides(face)
+    return Piece(f"template {face}", "template", title, lines + words, "tile", notice, points)
+
+
+def _sides(face: Face) -> str:
+    return " · legs named left lie to your RIGHT" if face == "underside" else " · left is left"
+
+
+def _lines(assembly: Assembly, face: Face, outline: Curve) -> Iterator[Drawing | Primitive]:
+    seen = face_map(face)
+    yield Stroke(outline, Role.CUT, closed=True)
+    bounds = assembly.blank.bounds
+    yield line((0.0, bounds.y1 + CENTRE_RUN_MM), (0.0, bounds.y0 - CENTRE_RUN_MM), Role.CENTRE)
+    for leg in assembly.legs:
+        yield from _leg_lines(assembly, leg, face, seen)
+
+
+def _leg_lines(assembly: Assembly, leg: Leg, face: Face, seen: Affine) -> Iterator[Drawing | Primitive]:
+    for shown, role in ((face, Role.SET_OUT), (other_face(face), Role.HIDDEN)):
+        for s in sections(leg, shown):
+            ellipse = ellipse_curve(s.centre, s.along_mm, s.across_mm, s.bearing_deg)
+            yield Stroke(mapped(ellipse, seen), role, closed=True)
+    centre = seen.point(leg.on_face(face))
+    bearing = seen_bearing(leg, face)
+    if sections(leg, other_face(face)):
+        yield cross(seen.point(leg.on_face(other_face(face))), 2.0, Role.HIDDEN, bearing)
+    reach = leg.mortise.bit / 2 + 4.0
+    yield cross(centre, reach, Role.SET_OUT, bearing)
+    yield circle(centre, 1.5, Role.SET_OUT)
+    if leg.drill.leans:
+        yield line(along(centre, bearing, -_back_mm(assembly, leg, face)), centre, Role.SET_OUT)
+        yield arrow(centre, along(centre, bearing, _edge_mm(assembly, leg, face) + SIGHTLINE_RUN_MM), 7.0, Role.SET_OUT)
+
+
+def seen_bearing(leg: Leg, face: Face) -> float:
+    """The direction of the foot on the face as it is seen, counter-clockwise from the right."""
+    return (180.0 - leg.drill.bearing_deg) % 360.0 if face == "underside" else leg.drill.bearing_deg
+
+
+def edge_distances_mm(assembly: Assembly, leg: Leg, face: Face) -> tuple[float, float]:
+    """From the mortise's centre to the seat's edge along the sightline: away from the foot (negative), toward it."""
+    crossings = assembly.blank.line_crossings(leg.on_face(face), leg.drill.bearing_deg)
+    return max(d for d in crossings if d <= 0.0), min(d for d in crossings if d >= 0.0)
+
+
+def _edge_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
+    return edge_distances_mm(assembly, leg, face)[1]
+
+
+def _back_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
+    return min(SIGHTLINE_BACK_MM, -edge_distances_mm(assembly, leg, face)[0])
+
+
+def _room(outline: Curve, lines: Drawing, centres: list[Point]) -> Room:
+    room = Room(flatten(outline, _ROOM_TOLERANCE_MM), edge_mm=3.0)
+    for points in polylines(Drawing(lines.items[1:]), _ROOM_TOLERANCE_MM):
+        room.take(points, 2.0)
+    for x, y in centres:
+        room.take_box(Box(x, y, x, y).grown(12.0))
+    return room
+
+
+def _words(assembly: Assembly, face: Face, room: Room) -> Iterator[Drawing]:
+    bounds = assembly.blank.bounds
+    yield _front(bounds, room)
+    for leg in assembly.legs:
+        yield _first_fit(room, _leg_words(assembly, leg, face), face_map(face).point(leg.on_face(face)))
+    yield _first_fit(room, _title_words(assembly, face), (0.0, bounds.y0 + 0.62 * bounds.height))
+    if len(assembly.legs) > 1:
+        yield _first_fit(room, _proof_words(assembly, face), (0.0, bounds.y0 + 0.4 * bounds.height))
+    yield _grain(assembly, face, room)
+
+
+def _front(bounds: Box, room: Room) -> Drawing:
+    """The word FRONT with its arrow to the front edge."""
+    width = text_width_mm("FRONT", 5.0, True) + 10.0
+    place = room.find(width, 11.0, (width / 2 + 6.0, bounds.y0 + 12.0)) or room.squeeze(width, 11.0, (width / 2, 12.0))
+    x = place.x0 + 3.0
+    shaft = arrow((x, place.y1), (x, place.y0 + 0.5), 5.0, Role.NOTE)
+    return shaft + Drawing((Text((x + 5.0, place.y0 + 2.5), "FRONT", 5.0, bold=True, over=True),))
+
+
+def _first_fit(room: Room, sizes: tuple[Lettered, ...], wanted: Point) -> Drawing:
+    """The first wording that finds room, else the last one where it is least crowded."""
+    for words in sizes:
+        place = room.find(words.width_mm + 2.0, words.height_mm + 1.0, wanted)
+        if place:
+            return words.set_in(place)
+    return sizes[-1].set_in(room.squeeze(sizes[-1].width_mm, sizes[-1].height_mm, wanted))
+
+
+def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Lettered, ...]:
+    name = (leg.name, 3.5, True)
+    hole = (bore_words(assembly, leg), 2.5, False)
+    if not leg.drill.leans:
+        return (Lettered((name, ("square to the face", 2.5, False), hole)),)
+    lean, bevel = format_angle(leg.drill.resultant_deg), format_angle(leg.drill.bevel_deg)
+    sight, complement = sightline_words(leg)
+    rest = [(complement, 2.5, False), hole]
+    if face == assembly.drilled:
+        toward = "to" if face == "underside" else "away from"
+        rest.append((f"the bit leans {toward} the arrow", 2.5, False))
+    large = [name, (f"lean {lean}", 5.0, True), (f"bevel {bevel}", 3.5, False), (sight, 3.5, False), *rest]
+    middling = [name, (f"lean {lean}  bevel {bevel}", 3.5, False), (sight, 2.5, False), *rest]
+    small = [name, (f"lean {lean}", 2.5, False), (f"bevel {bevel}", 2.5, False), (sight, 2.5, False), *rest]
+    return (Lettered(tuple(large)), Lettered(tuple(middling)), Lettered(tuple(small)))
+
+
+def sightline_words(leg: Leg) -> tuple[str, str]:
+    """The sightline from the fore-and-aft line, and its complement from the across line."""
+    sightline = leg.drill.sightline_deg
+    return (
+        f"sightline {format_angle(sightline)} from fore-and-aft",
+        f"({format_angle(90.0 - sightline)} from across)",
+    )
+
+
+def bore_words(assembly: Assembly, leg: Leg) -> str:
+    """What is bored, and how far."""
+    mortise: Mortise = leg.mortise
+    words = f"bit Ø {assembly.length(mortise.bit)}"
+    if mortise.taper:
+        words += f", ream {format_angle(mortise.taper)} to Ø {assembly.length(mouth_mm(leg))}"
+    return words + (", through" if mortise.depth is None else f", {assembly.length(bored_mm(leg))} deep")
+
+
+def _title_words(assembly: Assembly, face: Face) -> tuple[Lettered, ...]:
+    role = "bore from this face" if face == assembly.drilled else "not the face to bore from"
+    left = "left legs are on your right" if face == "underside" else "left legs are on your left"
+    name = assembly.furniture.name
+    lines = ((f"{face.upper()}", 7.0, True), (name, 3.5, False), (role, 3.5, False), (left, 2.5, False))
+    return (
+        Lettered(lines),
+        Lettered(((face.upper(), 5.0, True), (role, 2.5, False), (left, 2.5, False))),
+        Lettered(((face.upper(), 5.0, True),)),
+    )
+
+
+def proofs(assembly: Assembly, face: Face) -> tuple[tuple[str, str, float], ...]:
+    """Lengths between mortises' centres on a face, mm, to measure once the pages are taped.
+
+    The neighbours round the seat first, then the longest others.
+    """
+    legs = sorted(assembly.legs, key=lambda leg: _turn_about_middle(assembly, leg))
+    if len(legs) == 2:
+        pairs = [(legs[0], legs[1])]
+    else:
+        pairs = list(zip(legs, [*legs[1:], legs[0]], strict=True))
+        rest = [(p, q) for i, p in enumerate(legs) for q in legs[i + 2 :] if (p, q) != (legs[0], legs[-1])]
+        pairs += sorted(rest, key=lambda pair: -math.dist(pair[0].on_face(face), pair[1].on_face(face)))
+    return tuple((p.name, q.name, math.dist(p.on_face(face), q.on_face(face))) for p, q in pairs[:MOST_PROOFS])
+
+
+def _turn_about_middle(assembly: Assembly, leg: Leg) -> float:
+    x, y = leg.top_mm
+    return bearing_deg((x, y - assembly.blank.middle_y_mm))
+
+
+def _proof_words(assembly: Assembly, face: Face) -> tuple[Lettered, ...]:
+    found = proofs(assembly, face)
+    rows = [(f"{p} – {q}  {assembly.length(mm)}", 2.5, False) for p, q, mm in found]
+    head = ("Proof lengths, centre to centre", 2.5, True)
+    blocks = [Lettered((head, *rows)), Lettered((head, *rows[:4])), Lettered((head, *rows[-2:]))]
+    return tuple(blocks[:1] if len(rows) <= 2 else blocks)
+
+
+def _grain(assembly: Assembly, face: Face, room: Room) -> Drawing:
+    """The grain's arrow, its angle measured from the fore-and-aft line toward the right as seen from above."""
+    grain = assembly.furniture.seat.grain
+    if grain is None:
+        return Drawing()
+    grain_deg = GRAIN_DEG[grain] if isinstance(grain, str) else grain
+    bounds = assembly.blank.bounds
+    upright = abs(grain_deg) < 45.0
+    width, height = (14.0, 50.0) if upright else (50.0, 14.0)
+    place = room.find(width, height, (bounds.x0 + 0.25 * bounds.width, bounds.y0 + 0.5 * bounds.height))
+    if place is None:
+        return Drawing()
+    middle = place.centre
+    direction = face_map(face).vector(along((0.0, 0.0), 90.0 - grain_deg, 22.0))
+    ends = [(middle[0] + k * direction[0], middle[1] + k * direction[1]) for k in (1, -1)]
+    both = arrow(middle, ends[0], 4.0, Role.NOTE) + arrow(middle, ends[1], 4.0, Role.NOTE)
+    return both + Drawing((Text((middle[0], middle[1] - 1.2), "grain", 2.5, align="centre", over=True),))
