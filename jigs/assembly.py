@@ -26,9 +26,12 @@ Face = Literal["top", "underside"]
 ON_MIDDLE_MM = 1e-6
 
 
-@dataclass(frozen=True)
+@dataclass(frozen=True, eq=False)
 class Assembly:
-    """A piece of furniture, its blank and its legs in the order of the spec, twins left first."""
+    """A piece of furniture, its blank and its legs in the order of the spec, twins left first.
+
+    Two are the same only where they are one, so that what is worked out of one can be kept.
+    """
 
     furniture: Furniture
     blank: Blank
@@ -147,7 +150,9 @@ def _off_the_blank(assembly: Assembly) -> Iterator[Problem]:
         exit_face = other_face(assembly.drilled)
         if sections(leg, exit_face) and not assembly.blank.holds(leg.on_face(exit_face)):
             rule = f"comes out through the seat's side before it reaches the {exit_face}"
-            yield Problem(f"{leg.place}.at", f"{leg.name}'s bore", rule, "move the mortise further in or lessen the lean")
+            yield Problem(
+                f"{leg.place}.at", f"{leg.name}'s bore", rule, "move the mortise further in or lessen the lean"
+            )
 
 
 def _blind_from_top(furniture: Furniture) -> Iterator[Problem]:

@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
+from functools import cache
 from itertools import combinations
 
 from jigs.assembly import Assembly, other_face
@@ -29,6 +30,7 @@ STEEP_DEG = 25.0
 Finding = tuple[str, Caution]
 
 
+@cache
 def cautions(assembly: Assembly) -> tuple[Caution, ...]:
     """Everything unwise about the design, in the order of the legs; what holds of twins alike is said once."""
     found = [*_trips(assembly), *_edges(assembly), *_steep(assembly), *_crossed(assembly), *_webs(assembly)]

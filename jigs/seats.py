@@ -15,6 +15,8 @@ from functools import cached_property
 from itertools import pairwise
 from typing import TYPE_CHECKING
 
+import numpy as np
+
 from jigs.outlines import (
     OutlineError,
     d_outline,
@@ -33,7 +35,7 @@ from layout.geometry import Affine, Box, Curve, Point, Segment, flatten, segment
 from layout.shapes import ellipse_curve
 
 if TYPE_CHECKING:
-    from shapely import Polygon
+    from shapely import LinearRing, Polygon
 
 __all__ = ["Blank", "OutlineError", "outline"]
 
@@ -156,6 +158,11 @@ class Blank:
         return polygon
 
     @cached_property
+    def edge(self) -> LinearRing:
+        """The polygon's edge."""
+        return self.polygon.exterior
+
+    @cached_property
     def bounds(self) -> Box:
         """The true bounds."""
         return union(segment_box(segment) for segment in self.curve)
@@ -180,7 +187,7 @@ class Blank:
         """How far the point is from the edge, positive on the blank, negative off it, within EDGE_TOLERANCE_MM."""
         from shapely import Point as Spot  # noqa: PLC0415
 
-        distance = float(self.polygon.exterior.distance(Spot(point)))
+        distance = float(self.edge.distance(Spot(point)))
         return distance if self.holds(point) else -distance
 
     def line_crossings(self, point: Point, bearing_deg: float) -> tuple[float, ...]:
@@ -202,8 +209,9 @@ class Blank:
         import shapely  # noqa: PLC0415
 
         (arc,) = ellipse_curve(centre, along_mm, across_mm, angle_deg)
-        ring = shapely.LinearRing([arc.at(k / ELLIPSE_CHORDS) for k in range(ELLIPSE_CHORDS)])
-        edge = self.polygon.exterior
+        turns = np.linspace(0.0, 2 * np.pi, ELLIPSE_CHORDS, endpoint=False)[:, None]
+        ring = shapely.LinearRing(arc.centre + np.cos(turns) * arc.u + np.sin(turns) * arc.v)
+        edge = self.edge
         outside = ring.difference(self.polygon)
         if outside.is_empty:
             return float(edge.distance(ring))

@@ -138,11 +138,17 @@ def spans(axis: Axis, cell: float, low: Floats, high: Floats) -> tuple[Ints, Int
 
 def hits(table: Table, x: tuple[Ints, Ints], y: tuple[Ints, Ints]) -> Bools:
     """Whether a sample lies in each product of spans: (n, rows, columns)."""
+    hit: Bools = counts(table, x, y) > 0
+    return hit
+
+
+def counts(table: Table, x: tuple[Ints, Ints], y: tuple[Ints, Ints]) -> Ints:
+    """How many cells with a sample each product of spans holds: (n, rows, columns)."""
     flat, stride = table.ravel(), table.shape[1]
     x0, x1 = (a[:, None, :] for a in x)
     y0, y1 = (a[:, :, None] * stride for a in y)
-    hit: Bools = flat.take(y1 + x1) - flat.take(y1 + x0) > flat.take(y0 + x1) - flat.take(y0 + x0)
-    return hit
+    inside: Ints = flat.take(y1 + x1) - flat.take(y1 + x0) - flat.take(y0 + x1) + flat.take(y0 + x0)
+    return inside
 
 
 def _shown(kept: Bools) -> Bools:

@@ -19,17 +19,33 @@ from typing import NamedTuple, TypeVar
 import numpy as np
 import numpy.typing as npt
 
-from layout.cover import COVER_TOLERANCE_MM, Axis, Bools, Floats, Frame, Ints, Sheet, cover, hits, inked, spans, weigh
+from layout.cover import (
+    COVER_TOLERANCE_MM,
+    Axis,
+    Bools,
+    Floats,
+    Frame,
+    Ints,
+    Sheet,
+    counts,
+    cover,
+    hits,
+    inked,
+    spans,
+    weigh,
+)
 from layout.geometry import Box, Point
 
 # A point to prick should not lie nearer to a seam than this.
 SEAM_MARGIN_MM = 12.0
 # Short of that margin the search goes on only for a clearance larger by this; the last bit is left to the final sweep.
 CLEARANCE_STEP_MM = 0.5
+# Grids whose shared strips hold about as much ink are told apart by their margins.
+CROWD_STEP_MM = 40.0
 # How much one step of the search may look at: zones of all its grids, grids counted exactly.
 _MOST_ZONES = 60_000
 _MOST_ROUNDS = 6
-_FEWEST_LOOKS, _MOST_LOOKS = 100, 250
+_MOST_LOOKS = 250
 _MOST_PROBES = 8
 _MOST_TRIES = 3
 
@@ -70,8 +86,8 @@ def choose_grid(request: GridRequest, window_sizes: Sequence[tuple[float, float]
     """The best grid over all offsets and window sizes (width, height), mm.
 
     First by fewest pages, then by the points' distance from seams as far as it matters, then by fewest seams that the
-    outline crosses, then by the order of the sizes, then by even margins. Raises ValueError where there is no ink, no
-    size, or a window not larger than two overlaps.
+    outline crosses, then by the order of the sizes, by little ink in shared strips, by even margins. Raises ValueError
+    where there is no ink, no size, or a window not larger than two overlaps.
     """
     if not window_sizes or min(min(size) for size in window_sizes) <= 2 * request.overlap_mm:
         raise ValueError(f"each window must be larger than two overlaps of {request.overlap_mm} mm: {window_sizes}")
@@ -101,12 +117,6 @@ def _choice(grid: _Grid) -> GridChoice:
         left, low = grid.x + column * x.pitch, grid.y + row * y.pitch
         windows.append((column - first, top - row, Box(left, low, left + x.window, low + y.window)))
     return GridChoice(grid.frame.candidate, tuple(windows), grid.clearance)
-
-
-# --- the ink ---------------------------------------------------------------------------------------------------------
-
-
-# --- zones and pages -------------------------------------------------------------------------------------------------
 
 
 # --- what tells grids apart ------------------------------------------------------------------------------------------
@@ -149,12 +159,25 @@ def _clearance(frame: Frame, kept: Bools, at: Floats, points: Floats, own_only: 
 
 
 def _seam_cells(axis: Axis, cell: float, offset: Floats) -> tuple[tuple[Ints, Ints], tuple[Ints, Ints]]:
-    """Cells that each seam runs through, and those between seams."""
-    seams = offset[:, None] + np.arange(1, axis.cells) * axis.pitch + axis.overlap / 2
+    """Cells that each seam runs through, and those that each window shows: where a page beyond is left out, a seam runs
+    on to the window's edge.
+    """
     cells = int((axis.high - axis.low) / cell) + 1
-    at = np.floor((seams - axis.low) / cell).astype(np.int64)
-    bounds = np.clip(np.pad(at, ((0, 0), (1, 1)), constant_values=((0, 0), (0, cells))), 0, cells)
-    return (np.clip(at, 0, cells), np.clip(at + 1, 0, cells)), (bounds[:, :-1], bounds[:, 1:])
+
+    def index(at: Floats) -> Ints:
+        return np.clip(np.floor((at - axis.low) / cell).astype(np.int64), 0, cells)
+
+    starts = offset[:, None] + np.arange(axis.cells) * axis.pitch
+    seams = starts[:, 1:] + axis.overlap / 2
+    on_seam = np.floor((seams - axis.low) / cell).astype(np.int64)
+    shown = (index(starts), np.minimum(index(starts + axis.window) + 1, cells))
+    return (np.clip(on_seam, 0, cells), np.clip(on_seam + 1, 0, cells)), shown
+
+
+def _strip_cells(axis: Axis, cell: float, offset: Floats) -> tuple[tuple[Ints, Ints], tuple[Ints, Ints]]:
+    """Cells of each strip that two windows share, and those that each window shows."""
+    _, (first, last) = _seam_cells(axis, cell, offset)
+    return (first[:, 1:], last[:, :-1]), (first, last)
 
 
 def _crossings(sheet: Sheet, frame: Frame, kept: Bools, at: Floats) -> Ints:
@@ -167,6 +190,19 @@ def _crossings(sheet: Sheet, frame: Frame, kept: Bools, at: Floats) -> Ints:
     level = hits(sheet.outline_table, between_x, seams_y) & kept[:, :-1] & kept[:, 1:]
     count: Ints = upright.sum((1, 2)) + level.sum((1, 2))
     return count
+
+
+def _crowding(sheet: Sheet, frame: Frame, kept: Bools, at: Floats) -> Ints:
+    """How much ink lies in strips that two kept pages share, in steps of CROWD_STEP_MM: (n,).
+
+    Marks, and words to be read, are in each other's way there; a centre line along a seam is cut away.
+    """
+    strips_x, shown_x = _strip_cells(frame.x, sheet.cell, at[:, 0])
+    strips_y, shown_y = _strip_cells(frame.y, sheet.cell, at[:, 1])
+    upright = counts(sheet.ink_table, strips_x, shown_y) * (kept[:, :, :-1] & kept[:, :, 1:])
+    level = counts(sheet.ink_table, shown_x, strips_y) * (kept[:, :-1] & kept[:, 1:])
+    steps: Ints = ((upright.sum((1, 2)) + level.sum((1, 2))) * sheet.cell / CROWD_STEP_MM).astype(np.int64)
+    return steps
 
 
 def _unevenness(frame: Frame, kept: Bools, at: Floats) -> Floats:
@@ -278,7 +314,7 @@ class _Search:
 
     def _probe(self, frame: Frame, at: Floats) -> None:
         """Count exactly what looks best among the offsets (n, 2), as long as it may be better than what is found."""
-        at = _thinned(at, max(_FEWEST_LOOKS, min(_MOST_LOOKS, _MOST_ZONES // frame.zones)))
+        at = _thinned(at, _MOST_LOOKS)
         lower, kept = weigh(self._zones(frame, np.repeat(at, 2, axis=1)))
         # A range turned inside out widens the zones by more than samples may be out: pages that surely suffice.
         inside_out = 1.5 * self.sheet.cell * np.array([1, -1, 1, -1])
@@ -304,12 +340,17 @@ class _Search:
         at, kept = at[least], kept[least]
         clearance = _clearance(frame, kept, at, self.points)
         clear = -np.round(np.minimum(clearance, self.enough), 6)
-        crossed, uneven = _crossings(self.sheet, frame, kept, at), np.round(_unevenness(frame, kept, at), 6)
-        k = np.lexsort((at[:, 0], -at[:, 1], uneven, crossed, clear))[0]
-        rank = (pages.min(), clear[k], crossed[k], frame.candidate, uneven[k], -at[k, 1], at[k, 0])
+        crossed, crowded, uneven = self._lesser(frame, kept, at)
+        k = np.lexsort((at[:, 0], -at[:, 1], uneven, crowded, crossed, clear))[0]
+        rank = (pages.min(), clear[k], crossed[k], frame.candidate, crowded[k], uneven[k], -at[k, 1], at[k, 0])
         if self.found is None or rank < self.found.rank:
             x, y = at[k].tolist()
             self.found = _Grid(tuple(map(float, rank)), frame, x, y, kept[k], float(clearance[k]))
+
+    def _lesser(self, frame: Frame, kept: Bools, at: Floats) -> tuple[Ints, Ints, Floats]:
+        """What tells apart grids with as many pages, as clear: seams crossed, ink in strips, uneven margins."""
+        crossed, crowded = _crossings(self.sheet, frame, kept, at), _crowding(self.sheet, frame, kept, at)
+        return crossed, crowded, np.round(_unevenness(frame, kept, at), 6)
 
     def _sweep(self, frame: Frame, xs: Floats, ys: Floats) -> None:
         """Among a mesh of offsets, take the best by all that tells grids apart, counted exactly until one holds."""

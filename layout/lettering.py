@@ -1,29 +1,18 @@
-"""How wide a line of lettering is, and which characters the faces hold.
+"""How wide a line of lettering is, how it breaks into lines, and which characters can be lettered.
 
-Owns the two faces and their metrics, so that drawings can be laid out without a writer. Imports nothing of ours.
-The faces are DejaVu Sans Condensed and its bold (free licence beside them), which hold the Latin, Greek, Cyrillic,
-Armenian and Georgian letters.
+Owns lettering's measures, so that drawings can be laid out without a writer. Imports `faces` only.
 """
 
 from __future__ import annotations
 
-from functools import cache
-from pathlib import Path
-from typing import Any
+from functools import cache, lru_cache
 
-from fontTools.ttLib import TTFont
-
-FACES = {False: "DejaVuSansCondensed", True: "DejaVuSansCondensed-Bold"}
+from layout.faces import FACES, face
 
 # Height of a capital over the em, read off the glyph H of both faces (1493 of 2048 units).
 CAPITAL_OF_EM = 1493 / 2048
 # How far accents rise above and tails fall below the capitals' band, in capital heights.
 RISE, FALL = 0.35, 0.33
-
-
-def face_path(bold: bool) -> Path:
-    """The font file of a face."""
-    return Path(__file__).parent / "fonts" / f"{FACES[bold]}.ttf"
 
 
 def em_mm(height_mm: float) -> float:
@@ -32,22 +21,16 @@ def em_mm(height_mm: float) -> float:
 
 
 @cache
-def _metrics(bold: bool) -> tuple[dict[int, str], dict[str, Any], int]:
-    with TTFont(face_path(bold), lazy=True) as font:
-        return font.getBestCmap(), font["hmtx"].metrics, font["head"].unitsPerEm
-
-
-@cache
 def _advance(character: str, bold: bool) -> float:
-    glyphs, widths, units = _metrics(bold)
-    return float(widths[glyphs.get(ord(character), ".notdef")][0]) / units
+    return face(bold).advance(character)
 
 
 def covers(character: str) -> bool:
     """Whether both faces hold the character."""
-    return all(ord(character) in _metrics(bold)[0] for bold in FACES)
+    return all(ord(character) in face(bold).glyphs for bold in FACES)
 
 
+@lru_cache(maxsize=4096)
 def text_width_mm(text: str, height_mm: float, bold: bool = False) -> float:
     """The advance width of a line of lettering."""
     return em_mm(height_mm) * sum(_advance(character, bold) for character in text)

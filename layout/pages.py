@@ -130,9 +130,7 @@ def _packed_draft(page: PackedPage) -> _Draft:
     shown = [placement.piece for placement in page.placements]
     title, notice = _joined([piece.title for piece in shown]), _joined([piece.notice for piece in shown])
     sheet, stock = shown[0].sheet, shown[0].stock
-    return _Draft(
-        sheet, sheet, title, notice, page.size_mm, page.placements, stock, page.furniture, page.marks
-    )
+    return _Draft(sheet, sheet, title, notice, page.size_mm, page.placements, stock, page.furniture, page.marks)
 
 
 def _joined(words: Sequence[str]) -> str:

@@ -179,9 +179,7 @@ def _check_overlap(paper: Paper) -> None:
     if paper.overlap_mm > most:
         given = f"overlap {paper.overlap_mm:g} mm is too much for {paper.name} paper"
         rule = f"{LEAST_BETWEEN_STRIPS_MM:g} mm must be left between two shared strips"
-        raise PaperError(
-            f"{given} with a margin of {paper.margin_mm:g} mm: {rule}; at most {most:g} mm would do"
-        )
+        raise PaperError(f"{given} with a margin of {paper.margin_mm:g} mm: {rule}; at most {most:g} mm would do")
 
 
 def _least_window(paper: Paper) -> float:

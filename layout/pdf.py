@@ -17,9 +17,10 @@ from reportlab.pdfbase import pdfdoc, ttfonts
 
 from layout.document import Document, Page, Placement
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
+from layout.faces import FACES, face, face_path
 from layout.geometry import Affine, Arc, Box, Cubic, Curve, Line, Point, along, arc_as_cubics, union
 from layout.ink import INKS, WHITE
-from layout.lettering import FACES, em_mm, face_path, text_width_mm
+from layout.lettering import em_mm, text_width_mm
 from layout.operations import text_corners
 
 POINTS_PER_MM = 72 / 25.4
@@ -303,22 +304,17 @@ def _font_name(bold: bool, number: int) -> str:
 class _Face(ttfonts.TTFontFace):  # type: ignore[misc]
     """reportlab's face, its long tables read at one stroke: number by number, as it does, takes ten times as long."""
 
+    def __init__(self, bold: bool) -> None:
+        self._read = face(bold)
+        super().__init__(str(face_path(bold)))
+
     def extractInfo(self, charInfo: int = 1) -> None:  # noqa: N802, N803 - reportlab's names
         super().extractInfo(charInfo=0)
         scale = 1000 / self.unitsPerEm
-        (full,) = struct.unpack_from(">H", self.get_table("hhea"), 34)
-        self.hmetrics = _advances(self.get_table("hmtx"), self.numGlyphs, full)
+        self.hmetrics, self.charToGlyph = self._read.advances, self._read.glyphs
         self.glyphPos = _places(self.get_table("loca"), self.numGlyphs, long=self.get_table("head")[51] == 1)
-        self.charToGlyph = _characters(self.get_table("cmap"))
         self.charWidths = {code: self.hmetrics[glyph][0] * scale for code, glyph in self.charToGlyph.items()}
         self.defaultWidth = self.hmetrics[0][0] * scale
-
-
-def _advances(hmtx: bytes, glyphs: int, full: int) -> list[tuple[int, int]]:
-    """Advance and bearing of each glyph; those after the first `full` have the last one's advance."""
-    pairs = list(struct.iter_unpack(">HH", hmtx[: 4 * full]))
-    bearings = struct.unpack_from(f">{glyphs - full}H", hmtx, 4 * full)
-    return [*((advance, bearing) for advance, bearing in pairs), *((pairs[-1][0], bearing) for bearing in bearings)]
 
 
 def _places(loca: bytes, glyphs: int, long: bool) -> list[int]:
@@ -328,15 +324,6 @@ def _places(loca: bytes, glyphs: int, long: bool) -> list[int]:
     return [2 * half for half in struct.unpack_from(f">{glyphs + 1}H", loca)]
 
 
-def _characters(cmap: bytes) -> dict[int, int]:
-    """The glyph of each character, from the table of all Unicode (platform 3, encoding 10, format 12)."""
-    tables = struct.iter_unpack(">HHL", cmap[4 : 4 + 8 * int.from_bytes(cmap[2:4], "big")])
-    start = next(offset for platform, encoding, offset in tables if (platform, encoding) == (3, 10))
-    (count,) = struct.unpack_from(">L", cmap, start + 12)
-    runs = struct.iter_unpack(">LLL", cmap[start + 16 : start + 16 + 12 * count])
-    return {first + k: glyph + k for first, last, glyph in runs for k in range(last - first + 1)}
-
-
 @cache
 def _face(bold: bool) -> _Face:
-    return _Face(str(face_path(bold)))
+    return _Face(bold)

@@ -16,20 +16,20 @@ HOUSE = ("cli", "jigs", "layout")
 
 # Layout's modules from the ground up. Each may import those of earlier layers, and no others.
 LAYERS = (
-    {"geometry", "lettering", "files"},
-    {"drawing", "room", "cover", "flow"},
+    {"geometry", "faces", "files"},
+    {"lettering", "drawing", "room", "cover", "flow"},
     {"shapes", "operations", "piece", "ink", "grid"},
     {"document", "paper", "packing"},
     {"tiling", "furniture"},
-    {"marks", "tile_map", "scale_check"},
-    {"packed"},
+    {"marks", "scale_check"},
+    {"packed", "tile_map"},
     {"pages"},
 )
 # What a drawing is made with, which chairs may use too.
 GROUND = {"geometry", "drawing", "shapes", "lettering", "operations", "piece", "room"}
 # One writer per kind of file: above everything, yet each reads a finished document and nothing of how it was laid out.
 WRITERS = {"pdf", "report"}
-WRITERS_READ = GROUND | {"document", "ink"}
+WRITERS_READ = GROUND | {"document", "faces", "ink"}
 
 # Where each library may be imported. An output library in its writer alone; numpy and shapely where there is geometry.
 LIBRARIES = {
@@ -37,7 +37,7 @@ LIBRARIES = {
     "reportlab": ("layout/pdf.py",),
     "pydantic": ("jigs/spec.py", "jigs/spec_values.py", "jigs/spec_problems.py"),
     "pydantic_core": ("jigs/spec.py", "jigs/spec_values.py", "jigs/spec_problems.py"),
-    "fontTools": ("layout/lettering.py", "jigs/path_data.py"),
+    "fontTools": ("jigs/path_data.py",),
     "numpy": ("jigs/", "layout/"),
     "shapely": ("jigs/", "layout/"),
 }

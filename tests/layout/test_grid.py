@@ -296,11 +296,20 @@ def test_seams_go_round_the_outline_where_no_page_is_lost():
 
 
 def test_without_anything_to_avoid_the_margins_are_even():
-    choice = choose_grid(request(hatched(0, 0, 300, 400)), [PORTRAIT])
+    choice = choose_grid(request([frame(0, 0, 300, 400)]), [PORTRAIT])
     boxes = [window for _, _, window in choice.windows]
     left, right = min(b.x0 for b in boxes), max(b.x1 for b in boxes)
     below, above = min(b.y0 for b in boxes), max(b.y1 for b in boxes)
     assert (-left, -below) == pytest.approx((right - 300, above - 400), abs=1e-6)
+
+
+def test_no_seam_runs_along_a_line_where_another_place_costs_no_page():
+    # Even margins would put the seam of two columns on the drawing's centre line, x = 150.
+    centre_line = np.array([(150.0, 0.0), (150.0, 180.0)])
+    choice = choose_grid(request([frame(0, 0, 300, 180), centre_line]), [PORTRAIT])
+    assert len(choice.windows) == 2
+    left, right = (window for _, _, window in choice.windows)
+    assert not right.x0 <= 150.0 <= left.x1
 
 
 # --- window sizes ----------------------------------------------------------------------------------------------------

@@ -9,13 +9,13 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from PIL import ImageFont
 
+from layout.faces import face_path
 from layout.lettering import (
     CAPITAL_OF_EM,
     FALL,
     RISE,
     covers,
     em_mm,
-    face_path,
     shortened,
     text_width_mm,
     wrap,

@@ -23,9 +23,10 @@ from reportlab.pdfbase.ttfonts import TTFontFace
 from layout import pdf, shapes
 from layout.document import Document, Page, Placement
 from layout.drawing import Drawing, Fill, Role, Stroke, Text, gather
+from layout.faces import face_path
 from layout.geometry import Affine, Arc, Box, Cubic, Line
 from layout.ink import INKS
-from layout.lettering import CAPITAL_OF_EM, face_path, text_width_mm
+from layout.lettering import CAPITAL_OF_EM, text_width_mm
 from layout.operations import bounds, transform
 from layout.paper import SIZES_MM
 from layout.pdf import pdf_bytes
