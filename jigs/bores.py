@@ -173,16 +173,32 @@ def _ring(s: Section, z_mm: float) -> list[Vector]:
 def _gap_mm(one: Body, other: Body) -> float:
     """Between two convex bodies, or minus how far one must move to clear the other.
 
-    It is the widest slot between parallel planes that parts them, sought in all directions, then closer about the best.
+    It is the widest slot between parallel planes that parts them. Over directions, drawn as the points of a plane
+    tangent to a coarse best one, the width has one hill: a search across within a search along finds its top.
     """
-    directions = _ALL_ROUND
-    for reach in (0.15, 0.015, 0.0015):
-        best = directions[np.argmax(_slots_mm(one, other, directions))]
-        aside = np.cross(best, np.eye(3)[np.argmin(np.abs(best))])
-        aside /= np.linalg.norm(aside)
-        directions = best + reach * (_PATCH[:, :1] * aside + _PATCH[:, 1:] * np.cross(best, aside))
-        directions /= np.linalg.norm(directions, axis=1, keepdims=True)
-    return float(np.max(_slots_mm(one, other, directions)))
+    best = _ALL_ROUND[np.argmax(_slots_mm(one, other, _ALL_ROUND))]
+    aside = np.cross(best, np.eye(3)[np.argmin(np.abs(best))])
+    aside /= np.linalg.norm(aside)
+    up = np.cross(best, aside)
+    middle, reach, top = 0.0, 1.0, -math.inf
+    for _ in range(_ROUNDS):
+        along = middle + reach * _STEPS
+        tops = _tops_mm(one, other, best + along[:, None] * aside, up)
+        middle, reach, top = float(along[np.argmax(tops)]), reach * _CLOSER, max(top, float(tops.max()))
+    return top
+
+
+def _tops_mm(one: Body, other: Body, starts: NDArray[np.float64], up: NDArray[np.float64]) -> NDArray[np.float64]:
+    """The widest slot on each of the lines of directions that run `up` through the starts."""
+    middles, reach, tops = np.zeros(len(starts)), 1.0, np.full(len(starts), -np.inf)
+    for _ in range(_ROUNDS):
+        across = middles[:, None] + reach * _STEPS
+        directions = starts[:, None] + across[:, :, None] * up
+        directions /= np.linalg.norm(directions, axis=2, keepdims=True)
+        widths = _slots_mm(one, other, directions.reshape(-1, 3)).reshape(across.shape)
+        middles, reach = across[np.arange(len(starts)), widths.argmax(axis=1)], reach * _CLOSER
+        tops = np.maximum(tops, widths.max(axis=1))
+    return tops
 
 
 def _slots_mm(one: Body, other: Body, directions: NDArray[np.float64]) -> NDArray[np.float64]:
@@ -205,4 +221,7 @@ def _all_round(count: int) -> NDArray[np.float64]:
 
 
 _ALL_ROUND = _all_round(600)
-_PATCH = np.stack(np.meshgrid(np.linspace(-1.0, 1.0, 21), np.linspace(-1.0, 1.0, 21)), axis=-1).reshape(-1, 2)
+# Each round of a search looks at so many places, then as closely again between the neighbours of the best.
+_STEPS = np.linspace(-1.0, 1.0, 13)
+_CLOSER = 1.0 / 5.0
+_ROUNDS = 6

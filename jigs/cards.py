@@ -136,14 +136,13 @@ def _net_lines(shape: Net) -> Iterator[Drawing]:
 
 
 def _wall_words(assembly: Assembly, card: Card, shape: Net) -> Iterator[Drawing]:
-    """Words on the wall: the angle large, what it is, whose it is, and the arrow that must agree with the template's.
-    """
+    """Words on the wall: the angle large, what it is, whose it is, the arrow that must agree with the template's."""
     left, width = 4.0, min(shape.leaning_edge[0][0], shape.leaning_edge[1][0]) - 8.0
     y = HEIGHT_MM - 15.0
     yield Drawing((Text((left, y), format_angle(abs(card.lean_deg)), 8.0, bold=True),))
     if card.kind == "resultant":
-        yield Drawing((Text((left, y - 7.0), f"bevel {format_angle(90.0 - abs(card.lean_deg))}", 3.5),))
-        y -= 7.0
+        yield Drawing((Text((left, y - 7.5), f"bevel {format_angle(90.0 - abs(card.lean_deg))}", 3.5),))
+        y -= 7.5
     what = {"resultant": "lean of the bit", "splay": "splay of the bit", "rake": "rake of the bit"}[card.kind]
     block, y = paragraph((left, y - 4.0), what, 3.5, width, bold=True)
     yield block

@@ -1,6 +1,7 @@
 """What can be built and is merely unwise: cautions with stable codes, for the command line and the setting-out sheet.
 
-Every threshold is a named constant with its source. Imports `assembly`, `bores`, `seats` and `layout.geometry`; no drawing.
+Every threshold is a named constant with its source. Imports `assembly`, `bores`, `seats` and `layout.geometry`; no
+drawing.
 """
 
 from __future__ import annotations

@@ -115,9 +115,12 @@ def seen_bearing(leg: Leg, face: Face) -> float:
 
 
 def edge_distances_mm(assembly: Assembly, leg: Leg, face: Face) -> tuple[float, float]:
-    """From the mortise's centre to the seat's edge along the sightline: away from the foot (negative), toward it."""
+    """From the mortise's centre to the seat's edge along the sightline: away from the foot (negative), toward it.
+
+    0 where that way lies no seat: the line of a blind mortise may pass the other face beside it.
+    """
     crossings = assembly.blank.line_crossings(leg.on_face(face), leg.drill.bearing_deg)
-    return max(d for d in crossings if d <= 0.0), min(d for d in crossings if d >= 0.0)
+    return max((d for d in crossings if d <= 0.0), default=0.0), min((d for d in crossings if d >= 0.0), default=0.0)
 
 
 def _edge_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
@@ -188,7 +191,7 @@ def sightline_words(leg: Leg) -> tuple[str, str]:
     sightline = leg.drill.sightline_deg
     return (
         f"sightline {format_angle(sightline)} from fore-and-aft",
-        f"({format_angle(90.0 - sightline)} from across)",
+        f"({format_angle(leg.drill.complement_deg)} from across)",
     )
 
 

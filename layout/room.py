@@ -68,7 +68,7 @@ class Room:
         return found
 
     def squeeze(self, width_mm: float, height_mm: float, wanted: Point) -> Box:
-        """Like `find`, but the least crowded patch where none is free; outside the map where it is smaller than that."""
+        """Like `find`, but the least crowded patch where none is free; round `wanted` where the map is smaller."""
         found = self._search(width_mm, height_mm, wanted, centred=False, crowded=True)
         if found is None:
             x, y = wanted

@@ -42,7 +42,7 @@ def box_outline(box: Box, role: Role) -> Stroke:
     return polyline(box.corners(), role, closed=True)
 
 
-def circle_curve(centre: Point, radius_mm: float) -> Curve:
+def circle_curve(centre: Point, radius_mm: float) -> tuple[Arc]:
     """A full circle, counter-clockwise from the right."""
     return (Arc(centre, (radius_mm, 0.0), (0.0, radius_mm), 0.0, 360.0),)
 
@@ -52,7 +52,7 @@ def circle(centre: Point, radius_mm: float, role: Role) -> Stroke:
     return Stroke(circle_curve(centre, radius_mm), role, closed=True)
 
 
-def ellipse_curve(centre: Point, along_mm: float, across_mm: float, angle_deg: float) -> Curve:
+def ellipse_curve(centre: Point, along_mm: float, across_mm: float, angle_deg: float) -> tuple[Arc]:
     """A full ellipse: half-axis `along_mm` in the direction `angle_deg`, `across_mm` square to it."""
     turn = Affine.turn(angle_deg)
     return (Arc(centre, turn.vector((along_mm, 0.0)), turn.vector((0.0, across_mm)), 0.0, 360.0),)
