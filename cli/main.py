@@ -168,7 +168,7 @@ def _document(assembly: Assembly, paper: Paper, only: frozenset[str], face: str)
     from layout.pages import compose
     from layout.scale_check import scale_check
 
-    faces = faces_to_print(face, assembly.drilled)
+    faces = faces_to_print(face, assembly.drilled_faces)
     made: list[Piece] = []
     for name in SHEETS:
         if name in only:
@@ -176,10 +176,10 @@ def _document(assembly: Assembly, paper: Paper, only: frozenset[str], face: str)
     return compose(assembly.furniture.name, made, paper)
 
 
-def faces_to_print(asked: str, drilled: Face) -> tuple[Face, ...]:
-    """The drilled face first, always; then the other where it is asked for."""
-    other: Face = "top" if drilled == "underside" else "underside"
-    return (drilled, other) if asked in (other, "both") else (drilled,)
+def faces_to_print(asked: str, drilled: tuple[Face, ...]) -> tuple[Face, ...]:
+    """The drilled faces first, always; then the other where it is asked for."""
+    faces: tuple[Face, ...] = ("underside", "top")
+    return (*drilled, *(face for face in faces if face not in drilled and asked in (face, "both")))
 
 
 def _write(document: Document, output: Path, report_file: Path | None) -> None:

@@ -2,41 +2,62 @@
 wrong.
 
 Owns the way from a spec to legs and the refusal of what cannot be built; what is merely unwise is `checks`'.
-Imports the spec's models, `seats`, `legs`, `bores`, `frames`; no drawing of sheets.
+Imports the spec's models, `seats`, `members`, `bores`, `stretchers`; no drawing of sheets.
 """
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator
-from dataclasses import dataclass, replace
+from dataclasses import dataclass
 from itertools import combinations
-from typing import Literal
+from typing import TYPE_CHECKING
 
-from jigs.bores import mouth_mm, sections, web_mm
+from jigs.bores import least_web_mm, sections, web_mm
+from jigs.directions import Seating
 from jigs.frames import SeatFrame
-from jigs.legs import Axis, Leg, direction_of, follow
-from jigs.problems import Problem, SpecError
+from jigs.legs import Face, Leg
+from jigs.members import Members
+from jigs.problems import Caution, Problem, SpecError
 from jigs.quantities import format_length
 from jigs.seats import Blank, OutlineError, outline
-from jigs.spec import ON_CENTRE_LINE_MM, Furniture, LegSpec, leg_place
+from jigs.spec import Furniture, leg_place
+from jigs.spec_legs import StretcherTable
 
-Face = Literal["top", "underside"]
+if TYPE_CHECKING:
+    from jigs.stretchers import Member as Bar
+    from jigs.stretchers import Stretcher, StretcherSpec
 
-# A mortise this near to the middle of the seat's depth belongs to neither end.
-ON_MIDDLE_MM = 1e-6
+__all__ = ["Assembly", "Face", "assemble", "other_face"]
 
 
 @dataclass(frozen=True, eq=False)
 class Assembly:
-    """A piece of furniture, its blank and its legs in the order of the spec, twins left first.
+    """A piece of furniture, its blank and its parts in the order of the spec, twins left first.
 
-    Two are the same only where they are one, so that what is worked out of one can be kept.
+    `bars` are the legs and posts as stretchers meet them, `notes` what a maker is to be told of how legs were solved.
+    Two assemblies are the same only where they are one, so that what is worked out of one can be kept.
     """
 
     furniture: Furniture
     blank: Blank
     frame: SeatFrame
     legs: tuple[Leg, ...]
+    posts: tuple[Leg, ...] = ()
+    spindles: tuple[Leg, ...] = ()
+    stretchers: tuple[Stretcher, ...] = ()
+    bars: tuple[Bar, ...] = ()
+    notes: tuple[Caution, ...] = ()
+
+    @property
+    def bored(self) -> tuple[Leg, ...]:
+        """Everything that is bored into the seat: legs, posts, spindles."""
+        return (*self.legs, *self.posts, *self.spindles)
+
+    @property
+    def drilled_faces(self) -> tuple[Face, ...]:
+        """The faces that bits enter, that of the legs first."""
+        return tuple(dict.fromkeys((self.drilled, *(leg.drilled for leg in self.bored))))
 
     @property
     def drilled(self) -> Face:
@@ -59,79 +80,70 @@ def other_face(face: Face) -> Face:
 
 
 def assemble(furniture: Furniture, source: str) -> Assembly:
-    """The furniture with its legs worked out. Raises SpecError with every problem of the geometry at once."""
+    """The furniture with its parts worked out. Raises SpecError with every problem of the geometry at once."""
     frame = SeatFrame(furniture.seat.pitch, furniture.seat.height)
     try:
         blank = Blank(outline(furniture.seat, furniture.units))
     except OutlineError as error:
         raise SpecError(source, (Problem(error.field, error.given, error.rule, error.cure),)) from None
-    problems: list[Problem] = []
-    legs = [leg for leg in _legs(furniture, blank, frame, problems) if leg is not None]
-    assembly = Assembly(furniture, blank, frame, tuple(legs))
+    from_top = furniture.seat.drill_from == "top"
+    members = Members(furniture, Seating(frame, furniture.seat.thickness, from_top, blank, furniture.units))
+    legs, posts, spindles = members.legs(), members.posts(), members.spindles()
+    problems = members.problems
+    stretchers, bars = _stretchers(furniture, frame, (*legs, *posts), problems)
+    assembly = Assembly(furniture, blank, frame, legs, posts, spindles, stretchers, bars, tuple(members.notes))
     problems += [*_off_the_blank(assembly), *_blind_from_top(furniture), *_bores_that_meet(assembly)]
     if problems:
         raise SpecError(source, tuple(problems))
     return assembly
 
 
-def _legs(furniture: Furniture, blank: Blank, frame: SeatFrame, problems: list[Problem]) -> Iterator[Leg | None]:
-    for index, spec in enumerate(furniture.legs):
-        end = _end(spec, blank.middle_y_mm)
-        if end is None:
-            problems.append(_no_end(index))
-            continue
-        places = (-abs(spec.at[0]), abs(spec.at[0])) if spec.mirror else (spec.at[0],)
-        for name, x in zip(spec.names, places, strict=True):
-            try:
-                yield _leg(furniture, frame, index, spec, name, x, end)
-            except ValueError as error:
-                problems.append(Problem(leg_place(index), name, str(error), "raise the seat or lessen the lean"))
-                break
+def _stretchers(
+    furniture: Furniture, frame: SeatFrame, hosts: tuple[Leg, ...], problems: list[Problem]
+) -> tuple[tuple[Stretcher, ...], tuple[Bar, ...]]:
+    """The stretchers on their legs; not tried where a leg has a problem, which would only be said twice."""
+    if not furniture.stretchers or problems:
+        return (), ()
+    from jigs.stretchers import StretcherError, place  # noqa: PLC0415 - few pieces have stretchers
+
+    bars = tuple(as_bar(leg, frame, furniture.seat.thickness) for leg in hosts)
+    try:
+        return place([_asked(table) for table in furniture.stretchers], bars, furniture.units), bars
+    except StretcherError as error:
+        problems += [fault.problem() for fault in error.faults]
+        return (), bars
 
 
-def _end(spec: LegSpec, middle_y_mm: float) -> int | None:
-    if spec.end is not None:
-        return 1 if spec.end == "back" else -1
-    if abs(spec.at[1] - middle_y_mm) > ON_MIDDLE_MM:
-        return 1 if spec.at[1] > middle_y_mm else -1
-    return 1 if spec.rake == 0.0 else None
+def _asked(table: StretcherTable) -> StretcherSpec:
+    from jigs.stretchers import StretcherSpec  # noqa: PLC0415 - as above
 
-
-def _no_end(index: int) -> Problem:
-    rule = "is not given, and the leg stands in the middle of the seat's depth: its rake could be forward or back"
-    return Problem(f"{leg_place(index)}.end", "", rule, 'say end = "front" or end = "back"')
-
-
-def _leg(furniture: Furniture, frame: SeatFrame, index: int, spec: LegSpec, name: str, x: float, end: int) -> Leg:
-    side = 0 if abs(x) <= ON_CENTRE_LINE_MM else (1 if x > 0 else -1)
-    axis = Axis((x, spec.at[1]), direction_of(spec.splay, spec.rake, side, end), side, end)
-    run = follow(axis, frame, furniture.seat.thickness, furniture.seat.drill_from == "top")
-    leg = Leg(
-        name=name,
-        place=leg_place(index),
-        side=side,
-        end=end,
-        floor=run.floor,
-        drill=run.drill,
-        toward_foot=run.toward_foot,
-        top_mm=run.top_mm,
-        underside_mm=run.underside_mm,
-        foot_mm=run.foot_mm,
-        axis_mm=run.axis_mm,
-        in_seat_mm=run.in_seat_mm,
-        mortise=spec.mortise,
-        diameter_mm=spec.diameter,
-        foot_diameter_mm=spec.foot_diameter,
+    heights = table.heights if table.height is None else (table.height, table.height)
+    return StretcherSpec(
+        name=table.name,
+        between=table.between,
+        heights_mm=heights,
+        fractions=table.fractions,
+        diameter_mm=table.diameter,
+        tenon_mm=table.tenon,
+        tenon_diameter_mm=table.tenon_diameter or table.diameter,
     )
-    return _filling(leg, spec.model_fields_set)
 
 
-def _filling(leg: Leg, given: set[str]) -> Leg:
-    """A leg whose diameters are not given fills its mortise where that is widest."""
-    widest = mouth_mm(leg)
-    diameter = leg.diameter_mm if "diameter" in given else widest
-    foot = leg.foot_diameter_mm if "foot_diameter" in given else diameter
-    return replace(leg, diameter_mm=diameter, foot_diameter_mm=foot)
+def as_bar(leg: Leg, frame: SeatFrame, thickness_mm: float) -> Bar:
+    """A leg or post as a bar that stretchers are tenoned into, its clock positions read from its sightline."""
+    from jigs.stretchers import Member as Bar  # noqa: PLC0415 - as above
+
+    start = frame.to_floor((*leg.on_face(leg.enters), 0.0 if leg.enters == "top" else -thickness_mm))
+    bearing = math.radians(leg.drill.bearing_deg)
+    zero = (math.cos(bearing), math.sin(bearing), 0.0) if leg.drill.leans else (0.0, float(leg.end), 0.0)
+    return Bar(
+        leg.name,
+        start,
+        (*leg.foot_mm, leg.foot_z_mm),
+        leg.diameter_mm,
+        leg.foot_diameter_mm,
+        frame.turn_to_floor(zero),
+    )
 
 
 def _off_the_blank(assembly: Assembly) -> Iterator[Problem]:
@@ -139,15 +151,15 @@ def _off_the_blank(assembly: Assembly) -> Iterator[Problem]:
     for leg in assembly.legs:
         margins = [
             assembly.blank.ellipse_margin_mm(s.centre, s.along_mm, s.across_mm, s.bearing_deg)
-            for s in sections(leg, assembly.drilled)
+            for s in sections(leg, leg.drilled)
         ]
         entry = min(margins, default=0.0)
         if entry < 0.0:
-            given = f"{leg.name}'s mortise on the {assembly.drilled}"
+            given = f"{leg.name}'s mortise on the {leg.drilled}"
             rule = f"leaves the blank by {assembly.length(-entry)}"
             yield Problem(f"{leg.place}.at", given, rule, "move it further in, or make the seat larger")
             continue
-        exit_face = other_face(assembly.drilled)
+        exit_face = other_face(leg.drilled)
         if sections(leg, exit_face) and not assembly.blank.holds(leg.on_face(exit_face)):
             rule = f"comes out through the seat's side before it reaches the {exit_face}"
             yield Problem(
@@ -165,7 +177,9 @@ def _blind_from_top(furniture: Furniture) -> Iterator[Problem]:
 
 
 def _bores_that_meet(assembly: Assembly) -> Iterator[Problem]:
-    for one, other in combinations(assembly.legs, 2):
+    for one, other in combinations(assembly.bored, 2):
+        if least_web_mm(one, other, assembly.thickness_mm) >= 0.0:
+            continue
         web = web_mm(one, other, assembly.thickness_mm)
         if web < 0.0:
             rule = f"meets that of {one.name} inside the seat by {assembly.length(-web)}"

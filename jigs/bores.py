@@ -7,6 +7,7 @@ from __future__ import annotations
 
 import math
 from dataclasses import dataclass
+from functools import lru_cache
 
 import numpy as np
 from numpy.typing import NDArray
@@ -16,7 +17,7 @@ from jigs.legs import Leg
 from jigs.spec import Mortise
 
 # How closely the least wood between two bores is found, and beyond which distance it need not be.
-WEB_TOLERANCE_MM, FAR_MM = 0.01, 60.0
+WEB_TOLERANCE_MM, FAR_MM = 0.01, 15.0
 
 
 @dataclass(frozen=True, slots=True)
@@ -37,17 +38,17 @@ def section(leg: Leg, face: str, radius_mm: float, widening: float) -> Section:
     sightline lies r / (cos R - k) from the axis toward the foot and r / (cos R + k) the other way, so the ellipse's
     centre is not on the axis; its half-width across is r cos R / sqrt(cos² R - k²).
     """
-    lean = math.radians(leg.drill.resultant_deg)
+    lean = math.radians(leg.seat.resultant_deg)
     k = widening * math.sin(lean)
     ahead, behind = radius_mm / (math.cos(lean) - k), radius_mm / (math.cos(lean) + k)
-    bearing = math.radians(leg.drill.bearing_deg)
+    bearing = math.radians(leg.seat.bearing_deg)
     x, y = leg.on_face(face)
     offset = (ahead - behind) / 2
     return Section(
         centre=(x + offset * math.cos(bearing), y + offset * math.sin(bearing)),
         along_mm=(ahead + behind) / 2,
         across_mm=radius_mm * math.cos(lean) / math.sqrt(math.cos(lean) ** 2 - k**2),
-        bearing_deg=leg.drill.bearing_deg,
+        bearing_deg=leg.seat.bearing_deg,
     )
 
 
@@ -57,12 +58,12 @@ def taper_widening(mortise: Mortise) -> float:
 
 
 def bored_mm(leg: Leg) -> float:
-    """How deep the mortise is along the axis, from the underside for a blind one, else through."""
+    """How deep the mortise is along the axis, from the face that the part enters for a blind one, else through."""
     return leg.in_seat_mm if leg.mortise.depth is None else min(leg.mortise.depth, leg.in_seat_mm)
 
 
 def mouth_mm(leg: Leg) -> float:
-    """Diameter at the underside, where a leg's tenon enters: as given, else such that the taper ends at the bit's
+    """Diameter where the tenon enters: as given, else such that the taper ends at the bit's
     size.
     """
     mortise = leg.mortise
@@ -71,9 +72,9 @@ def mouth_mm(leg: Leg) -> float:
     return mortise.bit + 2 * bored_mm(leg) * taper_widening(mortise)
 
 
-def radius_mm(leg: Leg, from_underside_mm: float) -> float:
-    """The hole's radius square to the axis, at a distance along the axis from the underside."""
-    reamed = mouth_mm(leg) / 2 - from_underside_mm * taper_widening(leg.mortise)
+def radius_mm(leg: Leg, from_entry_mm: float) -> float:
+    """The hole's radius square to the axis, at a distance along the axis from the face that the part enters."""
+    reamed = mouth_mm(leg) / 2 - from_entry_mm * taper_widening(leg.mortise)
     return max(leg.mortise.bit / 2, reamed)
 
 
@@ -84,12 +85,12 @@ def sections(leg: Leg, face: str) -> tuple[Section, ...]:
     Two come only where the taper's cone and the bit's cylinder cross in the face itself; the hole is what either
     covers.
     """
-    if face == "top" and leg.mortise.depth is not None:
+    if face != leg.enters and leg.mortise.depth is not None:
         return ()
     bit = section(leg, face, leg.mortise.bit / 2, 0.0)
-    from_underside = leg.in_seat_mm if face == "top" else 0.0
+    inward = 0.0 if face == leg.enters else leg.in_seat_mm
     widening = taper_widening(leg.mortise)
-    reamed_radius = mouth_mm(leg) / 2 - from_underside * widening
+    reamed_radius = mouth_mm(leg) / 2 - inward * widening
     if widening == 0.0 or reamed_radius <= 0.0:
         return (bit,)
     return _outer(section(leg, face, reamed_radius, widening), bit, leg)
@@ -112,17 +113,23 @@ def wood_above_mm(leg: Leg, thickness_mm: float) -> float | None:
     """What a blind mortise leaves below the top face at its highest corner; None for a through one."""
     if leg.mortise.depth is None:
         return None
-    lean = math.radians(leg.drill.resultant_deg)
+    lean = math.radians(leg.seat.resultant_deg)
     return thickness_mm - leg.mortise.depth * math.cos(lean) - radius_mm(leg, leg.mortise.depth) * math.sin(lean)
 
 
+def least_web_mm(one: Leg, other: Leg, thickness_mm: float) -> float:
+    """What wood there is at least between two bores, at little cost: as if each were everywhere at its widest."""
+    *_, distance = nearest_on_segments(*_axis(one, thickness_mm), *_axis(other, thickness_mm))
+    return distance - _widest_mm(one) - _widest_mm(other)
+
+
+@lru_cache(maxsize=256)
 def web_mm(one: Leg, other: Leg, thickness_mm: float) -> float:
     """The least wood between two bores inside the seat, within WEB_TOLERANCE_MM; negative, how deep, where they meet.
 
     For bores further apart than FAR_MM it is what there is at least.
     """
-    *_, distance = nearest_on_segments(*_axis(one, thickness_mm), *_axis(other, thickness_mm))
-    at_least = distance - _widest_mm(one) - _widest_mm(other)
+    at_least = least_web_mm(one, other, thickness_mm)
     if at_least > FAR_MM:
         return at_least
     mine, others = _bodies(one, thickness_mm), _bodies(other, thickness_mm)
@@ -130,14 +137,19 @@ def web_mm(one: Leg, other: Leg, thickness_mm: float) -> float:
 
 
 def _axis(leg: Leg, thickness_mm: float) -> tuple[Vector, Vector]:
-    """A bore's axis, from the underside to where it ends."""
-    start = (*leg.underside_mm, -thickness_mm)
+    """A bore's axis, from the face that the part enters to where it ends."""
+    start = (*leg.on_face(leg.enters), _height_mm(leg.enters, thickness_mm))
     return start, further(start, leg.toward_foot, -bored_mm(leg))
+
+
+def _height_mm(face: str, thickness_mm: float) -> float:
+    """Of a face in the seat frame."""
+    return 0.0 if face == "top" else -thickness_mm
 
 
 def _widest_mm(leg: Leg) -> float:
     """No part of the bore is further from its axis than this: the mouth's far edge on the face."""
-    lean = math.radians(leg.drill.resultant_deg)
+    lean = math.radians(leg.seat.resultant_deg)
     return max(mouth_mm(leg), leg.mortise.bit) / 2 / (math.cos(lean) - taper_widening(leg.mortise) * math.sin(lean))
 
 
@@ -155,11 +167,12 @@ def _bodies(leg: Leg, thickness_mm: float) -> list[Body]:
 def _body(leg: Leg, thickness_mm: float, mouth_radius_mm: float, widening: float) -> Body:
     start, end = _axis(leg, thickness_mm)
     end_radius = mouth_radius_mm - bored_mm(leg) * widening
-    mouth = _ring(section(leg, "underside", mouth_radius_mm, widening), -thickness_mm)
+    near, far = leg.enters, "underside" if leg.enters == "top" else "top"
+    mouth = _ring(section(leg, near, mouth_radius_mm, widening), _height_mm(near, thickness_mm))
     if end_radius <= 0.0:
         return np.array([mouth, [further(start, leg.toward_foot, -mouth_radius_mm / widening), (0, 0, 0), (0, 0, 0)]])
     if leg.mortise.depth is None:
-        return np.array([mouth, _ring(section(leg, "top", end_radius, widening), 0.0)])
+        return np.array([mouth, _ring(section(leg, far, end_radius, widening), _height_mm(far, thickness_mm))])
     across = np.cross(leg.toward_foot, (1.0, 0.0, 0.0))
     across *= end_radius / np.linalg.norm(across)
     return np.array([mouth, [end, across, np.cross(leg.toward_foot, across)]])

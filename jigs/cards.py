@@ -12,10 +12,10 @@ The leaning edge runs from (FOOT_MM, 0) up and, for a positive lean, to the righ
 from __future__ import annotations
 
 import math
-from collections.abc import Iterable, Iterator
+from collections.abc import Iterator, Sequence
 from dataclasses import dataclass
 
-from jigs.assembly import Assembly
+from jigs.assembly import Assembly, Face
 from jigs.legs import Leg
 from jigs.quantities import format_angle
 from layout.drawing import Drawing, Role, Text, gather
@@ -26,6 +26,8 @@ from layout.shapes import arrow, arrow_head, line, paragraph, polyline
 
 # Angles nearer than this share a card; a foot 500 mm away moves by less than 0.1 mm.
 SAME_ANGLE_DEG = 0.01
+# Spindles are whittled to fit and flex: within this spread they share a card, which says so (practice).
+SPINDLE_ANGLE_DEG = 0.5
 # The wall's foot and height, the buttress's depth and the tab's: a card that stands, and small enough for two on a
 # page.
 FOOT_MM, HEIGHT_MM, BUTTRESS_MM, TAB_MM = 56.0, 100.0, 40.0, 15.0
@@ -84,48 +86,87 @@ class Card:
     legs: tuple[str, ...]
     line: str
     toward: str
+    face: Face
+    within_deg: float = 0.0
+
+
+# A card's kind: on which line it stands, what lies to the right as printed (a post's upper end for a leg's foot).
+_KINDS = (
+    ("resultant", "the sightline", {"leg": "FOOT", "post": "TOP END", "spindle": "TOP END"}),
+    ("splay", "the across line", dict.fromkeys(("leg", "post", "spindle"), "OWN SIDE")),
+    ("rake", "the fore-and-aft line", dict.fromkeys(("leg", "post", "spindle"), "OWN END")),
+)
 
 
 def cards(assembly: Assembly) -> tuple[Card, ...]:
-    """One card for each different resultant, splay and rake in the seat frame, in the order of the legs."""
-    shank = 1.0 if assembly.drilled == "underside" else -1.0
-    kinds = (
-        ("resultant", "the sightline", "FOOT", [leg.drill.resultant_deg for leg in assembly.legs]),
-        ("splay", "the across line", "OWN SIDE", [leg.drill.splay_deg for leg in assembly.legs]),
-        ("rake", "the fore-and-aft line", "OWN END", [leg.drill.rake_deg for leg in assembly.legs]),
-    )
+    """One card for each different resultant, splay and rake at the face, legs first, then posts and spindles.
+
+    Spindles whose angles lie within SPINDLE_ANGLE_DEG of each other share a card at the middle of theirs.
+    """
     made: list[Card] = []
-    for kind, on, toward, angles in kinds:
-        for angle, legs in _shared(assembly.legs, angles):
-            made.append(Card(kind, shank * angle, tuple(leg.name for leg in legs), on, toward))
-    return tuple(made)
+    for parts, within in ((assembly.legs, SAME_ANGLE_DEG), (assembly.posts, SAME_ANGLE_DEG)):
+        made += _cards_for(parts, within)
+    return (*made, *_cards_for(assembly.spindles, SPINDLE_ANGLE_DEG))
 
 
-def _shared(legs: Iterable[Leg], angles: list[float]) -> list[tuple[float, list[Leg]]]:
-    """Legs by angle: those within SAME_ANGLE_DEG of a first one share its card."""
-    groups: list[tuple[float, list[Leg]]] = []
-    for leg, angle in zip(legs, angles, strict=True):
-        for first, members in groups:
-            if abs(first - angle) <= SAME_ANGLE_DEG:
-                members.append(leg)
-                break
+def _cards_for(parts: tuple[Leg, ...], within_deg: float) -> Iterator[Card]:
+    for kind, on, toward in _KINDS:
+        for angle, half, legs in _shared(parts, [_angle(leg, kind) for leg in parts], within_deg):
+            shank = 1.0 if legs[0].leans_with_bit else -1.0
+            names = tuple(leg.name for leg in legs)
+            yield Card(kind, shank * angle, names, on, toward[legs[0].kind], legs[0].drilled, half)
+
+
+def _angle(leg: Leg, kind: str) -> float:
+    drill = leg.drill
+    return {"resultant": drill.resultant_deg, "splay": drill.splay_deg, "rake": drill.rake_deg}[kind]
+
+
+Shared = tuple[float, float, list[Leg]]
+
+
+def _shared(legs: Sequence[Leg], angles: list[float], within_deg: float) -> list[Shared]:
+    """Legs by angle, those that lie within `within_deg` of each other together: the middle, half the spread, the legs.
+
+    In the order of each group's first leg; a group of one has its angle to the last bit.
+    """
+    groups: list[list[int]] = []
+    for k in sorted(range(len(legs)), key=lambda k: angles[k]):
+        if groups and angles[k] - angles[groups[-1][0]] <= within_deg:
+            groups[-1].append(k)
         else:
-            groups.append((angle, [leg]))
-    return groups
+            groups.append([k])
+    found: list[Shared] = []
+    for group in sorted(groups, key=min):
+        low, high = angles[group[0]], angles[group[-1]]
+        found.append((low if low == high else (low + high) / 2, (high - low) / 2, [legs[k] for k in sorted(group)]))
+    return found
 
 
 def card_pieces(assembly: Assembly) -> tuple[Piece, ...]:
     """Every card of the furniture, standing ones first, then the angles to set a sliding bevel to."""
     standing = [_card_piece(assembly, number, card) for number, card in enumerate(cards(assembly), 1)]
-    groups = _shared(assembly.legs, [leg.drill.resultant_deg for leg in assembly.legs])
-    flat = [_bevel_piece(assembly, number, angle, legs) for number, (angle, legs) in enumerate(groups, 1)]
+    groups = [
+        group
+        for parts, within in (
+            ((*assembly.legs, *assembly.posts), SAME_ANGLE_DEG),
+            (assembly.spindles, SPINDLE_ANGLE_DEG),
+        )
+        for group in _shared(parts, [leg.drill.resultant_deg for leg in parts], within)
+    ]
+    flat = [_bevel_piece(assembly, number, angle, legs) for number, (angle, _, legs) in enumerate(groups, 1)]
     return (*standing, *flat)
+
+
+def _notice(assembly: Assembly) -> str:
+    faces = assembly.drilled_faces
+    return f"for boring from the {faces[0].upper()}" if len(faces) == 1 else "each card says on which face it stands"
 
 
 def _card_piece(assembly: Assembly, number: int, card: Card) -> Piece:
     shape = net(card.lean_deg)
-    drawing = gather([*_net_lines(shape), *_wall_words(assembly, card, shape), _tab_words(shape)])
-    notice = f"for boring from the {assembly.drilled.upper()}"
+    drawing = gather([*_net_lines(shape), *_wall_words(card, shape), _tab_words(shape)])
+    notice = _notice(assembly)
     return Piece(f"card {number} {card.kind}", "cards", "Angle cards", drawing, "pack", notice, stock="card")
 
 
@@ -135,7 +176,7 @@ def _net_lines(shape: Net) -> Iterator[Drawing]:
     yield Drawing((line(*shape.wall_tab_fold, Role.FOLD), line(*shape.wall_buttress_fold, Role.FOLD)))
 
 
-def _wall_words(assembly: Assembly, card: Card, shape: Net) -> Iterator[Drawing]:
+def _wall_words(card: Card, shape: Net) -> Iterator[Drawing]:
     """Words on the wall: the angle large, what it is, whose it is, the arrow that must agree with the template's."""
     left, width = 4.0, min(shape.leaning_edge[0][0], shape.leaning_edge[1][0]) - 8.0
     y = HEIGHT_MM - 15.0
@@ -146,10 +187,13 @@ def _wall_words(assembly: Assembly, card: Card, shape: Net) -> Iterator[Drawing]
     what = {"resultant": "lean of the bit", "splay": "splay of the bit", "rake": "rake of the bit"}[card.kind]
     block, y = paragraph((left, y - 4.0), what, 3.5, width, bold=True)
     yield block
-    names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 5 * width, 2.5), 2.5, width)
+    names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 4.5 * width, 2.5), 2.5, width)
     yield names
+    if card.within_deg > SAME_ANGLE_DEG:
+        block, y = paragraph((left, y - 1.0), f"all within {format_angle(card.within_deg, 2)}", 2.5, width)
+        yield block
     for words in (
-        f"stand the fold on {card.line}, on the {assembly.drilled}",
+        f"stand the fold on {card.line}, on the {card.face}",
         "the edge on the right leans with the bit",
     ):
         block, y = paragraph((left, y - 2.0), words, 2.5, width)
@@ -181,7 +225,7 @@ def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: li
     corner = (0.0, 0.0)
     blade = along(corner, bevel, BLADE_MM)
     frame = ((-8.0, -14.0), (BASE_MM + 6.0, -14.0), (BASE_MM + 6.0, BLADE_MM + 6.0), (-8.0, BLADE_MM + 6.0))
-    names = shortened(", ".join(leg.name for leg in legs), 70.0, 2.5)
+    names = shortened(", ".join(leg.name for leg in legs), 4.5 * 58.0, 2.5)
     drawing = gather(
         [
             polyline(frame, Role.CUT, closed=True),
@@ -191,9 +235,9 @@ def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: li
             Text((BASE_MM, -6.0), "stock of the bevel along this line, which is the face", 2.5, align="right"),
             Text((50.0, 42.0), f"bevel {format_angle(bevel)}", 7.0, bold=True),
             Text((50.0, 32.0), f"lean {format_angle(resultant_deg)} from square", 3.5),
-            *(Text((50.0, 24.0 - 5.0 * k), words, 2.5) for k, words in enumerate(wrap(names, 66.0, 2.5))),
+            *(Text((50.0, 24.0 - 5.0 * k), words, 2.5) for k, words in enumerate(wrap(names, 58.0, 2.5))),
             arrow_head(blade, bevel, 4.0, Role.SET_OUT),
         ]
     )
-    notice = f"for boring from the {assembly.drilled.upper()}"
+    notice = _notice(assembly)
     return Piece(f"bevel {number}", "cards", "Angle cards", drawing, "pack", notice, stock="card")

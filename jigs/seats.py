@@ -11,7 +11,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterator
 from dataclasses import dataclass
-from functools import cached_property
+from functools import cached_property, lru_cache
 from itertools import pairwise
 from typing import TYPE_CHECKING
 
@@ -31,8 +31,7 @@ from jigs.path_data import path_outline
 from jigs.quantities import Units, format_length
 from jigs.shield import shield_outline
 from jigs.spec import SEAT_SIZE_MM, DSeat, OvalSeat, PathSeat, PolygonSeat, RectangleSeat, RoundSeat, Seat, ShieldSeat
-from layout.geometry import Affine, Box, Curve, Point, Segment, flatten, segment_box, union
-from layout.shapes import ellipse_curve
+from layout.geometry import Affine, Box, Curve, Point, Segment, ellipse_curve, flatten, segment_box, union
 
 if TYPE_CHECKING:
     from shapely import LinearRing, Polygon
@@ -115,6 +114,7 @@ def _refuse_size(box: Box, field: str, units: Units) -> None:
             raise OutlineError(field, given, f"is not between {bounds}")
 
 
+@lru_cache(maxsize=4)
 def _ring(curve: Curve) -> list[Point]:
     """The outline as chords, closed to the last bit: an end that overshoots its start by rounding crosses it."""
     points = flatten(curve, EDGE_TOLERANCE_MM)

@@ -5,6 +5,7 @@ Imports `assembly`, `checks`, `legs`, `quantities`; no drawing.
 
 from __future__ import annotations
 
+from collections.abc import Callable
 from typing import Any
 
 from jigs.assembly import Assembly
@@ -18,9 +19,25 @@ def settings(assembly: Assembly) -> dict[str, Any]:
     return {
         "name": assembly.furniture.name,
         "drill_from": assembly.drilled,
-        "legs": [_leg_settings(leg) for leg in assembly.legs],
+        "legs": [{**_leg_settings(leg), "cut": _cut(assembly, leg)} for leg in assembly.legs],
+        "posts": [_leg_settings(post) for post in assembly.posts],
+        "spindles": [_leg_settings(spindle) for spindle in assembly.spindles],
+        "stretchers": [stretcher.data() for stretcher in assembly.stretchers],
+        "stability": _stability(assembly),
         "warnings": [{"code": c.code, "where": c.where, "text": c.text} for c in cautions(assembly)],
     }
+
+
+def _cut(assembly: Assembly, leg: Leg) -> dict[str, float]:
+    from jigs.cutting import blank_mm, foot_bevel_deg  # noqa: PLC0415 - the table does without
+
+    return {"blank_mm": blank_mm(assembly, leg), "foot_bevel_deg": foot_bevel_deg(leg)}
+
+
+def _stability(assembly: Assembly) -> Any:
+    from jigs.loads import standing  # noqa: PLC0415 - as above
+
+    return standing(assembly).data()
 
 
 def _leg_settings(leg: Leg) -> dict[str, Any]:
@@ -30,6 +47,8 @@ def _leg_settings(leg: Leg) -> dict[str, Any]:
         "drill": {**_lean(leg.drill), "bevel_deg": leg.drill.bevel_deg, "bearing_deg": leg.drill.bearing_deg},
         "mortise": {"top_mm": list(leg.top_mm), "underside_mm": list(leg.underside_mm)},
         "foot_mm": list(leg.foot_mm),
+        "foot_z_mm": leg.foot_z_mm,
+        "drilled_from": leg.drilled,
         "axis_mm": leg.axis_mm,
         "in_seat_mm": leg.in_seat_mm,
     }
@@ -44,8 +63,8 @@ def _lean(lean: Lean) -> dict[str, float]:
     }
 
 
-# Columns of the table: heading in two lines, width. Together with the names' column they fill 80 characters.
-_NAME_WIDTH = 17
+# Columns of the table: heading in two lines, width. Together with the names' column they stay within _TABLE_WIDTH.
+_TABLE_WIDTH, _NAME_WIDTH, _PAIR_WIDTH = 80, 17, 20
 _COLUMNS = (
     ("", "splay", 7),
     ("", "rake", 7),
@@ -53,21 +72,22 @@ _COLUMNS = (
     ("sight-", "line", 8),
     ("comple-", "ment", 8),
     ("", "bevel", 7),
-    ("leg", "length", 12),
+    ("leg", "length", 14),
 )
 
 
 def table(assembly: Assembly) -> str:
     """The settings in 80 columns: what to bore by, then how the legs stand."""
     seat = assembly.furniture.seat
-    lines = [assembly.furniture.name, ""]
-    lines += [f"To bore by: from the {assembly.drilled}, angles from the line square to the seat"]
-    lines += _rows(assembly, [(leg, leg.drill) for leg in assembly.legs])
+    lines = [assembly.furniture.name]
+    for face in assembly.drilled_faces:
+        lines += ["", f"To bore by: from the {face}, angles from the line square to the seat"]
+        lines += _rows(assembly, [(leg, leg.drill) for leg in assembly.bored if leg.drilled == face])
     if seat.pitch:
         lines += ["", f"As they stand: the seat pitched {format_angle(seat.pitch)}, angles from plumb"]
-        lines += _rows(assembly, [(leg, leg.floor) for leg in assembly.legs])
+        lines += _rows(assembly, [(leg, leg.floor) for leg in assembly.bored])
     lines += ["", "Where they come through and stand: x from the centre line, y from the front edge"]
-    lines += _points(assembly)
+    lines += [*_points(assembly), *_stretchers(assembly)]
     lines += [
         "",
         "Sightline: from the fore-and-aft line through the mortise toward the leg's own",
@@ -84,25 +104,59 @@ def _rows(assembly: Assembly, leans: list[tuple[Leg, Lean]]) -> list[str]:
 
 
 def _row(assembly: Assembly, leg: Leg, lean: Lean) -> str:
-    complement = 90.0 - lean.sightline_deg
     angles = [lean.splay_deg, lean.rake_deg, lean.resultant_deg]
     cells = [format_angle(angle) for angle in angles]
-    cells += [format_angle(lean.sightline_deg), format_angle(complement)] if lean.leans else ["-", "-"]
+    cells += [format_angle(lean.sightline_deg), format_angle(lean.complement_deg)] if lean.leans else ["-", "-"]
     cells += [format_angle(lean.bevel_deg), assembly.length(leg.axis_mm)]
     return _named(leg.name) + "".join(cell.rjust(width) for cell, (_, _, width) in zip(cells, _COLUMNS, strict=True))
 
 
-def _named(name: str) -> str:
-    return (name if len(name) <= _NAME_WIDTH else name[: _NAME_WIDTH - 1] + "…").ljust(_NAME_WIDTH)
+def _named(name: str, width: int = _NAME_WIDTH) -> str:
+    return short_name(name, lambda words: len(words) < width).ljust(width)
+
+
+def short_name(name: str, fits: Callable[[str], bool]) -> str:
+    """The name, cut with an ellipsis where it does not fit; a twin keeps its side, by which alone it is told apart."""
+    side = next((side for side in (" left", " right") if name.endswith(side)), "")
+    shown, kept = name, name.removesuffix(side)
+    while kept and not fits(shown):
+        kept = kept[:-1]
+        shown = kept.rstrip() + "…" + side
+    return shown
 
 
 def _points(assembly: Assembly) -> list[str]:
-    def pair(p: tuple[float, float]) -> str:
-        return f"{_bare(assembly, p[0])}, {_bare(assembly, p[1])}".rjust(20)
+    """Coordinates as pairs; a large seat in inches needs wider columns, which take from the names."""
 
-    head = " " * _NAME_WIDTH + "".join(title.rjust(20) for title in ("on the top", "on the underside", "foot"))
-    rows = [_named(leg.name) + pair(leg.top_mm) + pair(leg.underside_mm) + pair(leg.foot_mm) for leg in assembly.legs]
-    return [head, *rows]
+    def pair(p: tuple[float, float]) -> str:
+        return f"{_bare(assembly, p[0])}, {_bare(assembly, p[1])}"
+
+    cells = [[pair(leg.top_mm), pair(leg.underside_mm), pair(leg.foot_mm)] for leg in assembly.bored]
+    above = bool(assembly.posts or assembly.spindles)
+    wide = max(_PAIR_WIDTH, 2 + max(len(cell) for row in cells for cell in row))
+    names = min(_NAME_WIDTH, _TABLE_WIDTH - 3 * wide)
+    rows = zip(
+        [""] + [leg.name for leg in assembly.bored],
+        [["on the top", "on the underside", "foot or upper end" if above else "foot"], *cells],
+        strict=True,
+    )
+    return [_named(name, names) + "".join(cell.rjust(wide) for cell in row) for name, row in rows]
+
+
+def _stretchers(assembly: Assembly) -> list[str]:
+    """Each stretcher's lengths, then each of its ends: boring angle, clock position from the sightline, height."""
+    if not assembly.stretchers:
+        return []
+    head = "".join(title.rjust(21) for title in ("between axes", "shoulders", "over tenons"))
+    lines = ["", "Stretchers", " " * _NAME_WIDTH + head]
+    for stretcher in assembly.stretchers:
+        lengths = (stretcher.between_axes_mm, stretcher.shoulder_mm, stretcher.over_tenons_mm)
+        lines.append(_named(stretcher.name) + "".join(assembly.length(mm).rjust(21) for mm in lengths))
+        for end in stretcher.ends:
+            bore, clock = format_angle(end.bore_deg), format_angle(end.clock_deg)
+            height = assembly.length(end.height_mm)
+            lines.append(f"  in {_named(end.host, 18)} bore {bore:>6}  clock {clock:>6}  height {height}")
+    return lines
 
 
 def _bare(assembly: Assembly, mm: float) -> str:

@@ -41,6 +41,14 @@ _MISSING = {
     "legs.splay": "the lean seen from the front, such as splay = 12",
     "legs.rake": "the lean seen from the side, such as rake = 9",
     "legs.mortise": 'the bit\'s diameter, such as mortise = "25 mm"',
+    "rings.count": "how many legs stand in the ring, such as count = 5",
+    "rings.circle": 'the diameter of the circle of mortises, such as circle = "240 mm"',
+    "posts.length": 'from the top face to the upper end along the axis, such as length = "480 mm"',
+    "spindles.count": "how many spindles stand in the row, such as count = 7",
+    "spindles.deck": "the row of mortises, such as deck = { width = 360, back = 380, bow = 30 }",
+    "spindles.crest": "the row of upper ends, such as crest = { width = 440, back = 460, bow = 40, height = 480 }",
+    "stretchers.between": 'the two parts that it joins, such as between = ["front left", "back left"]',
+    "stretchers.diameter": 'the stretcher\'s diameter, such as diameter = "22 mm"',
     "legs.mortise.bit": 'the bit\'s diameter, such as bit = "16 mm"',
 }
 
@@ -143,12 +151,18 @@ def _problem(loc: Loc, error: ErrorDetails, keys: Keys) -> Problem:
 
 
 def _missing(loc: Loc, _error: ErrorDetails, _keys: Keys) -> Problem:
-    return Problem(place(loc), "", _MISSING_KEY, _MISSING.get(_without_numbers(loc), ""))
+    return Problem(place(loc), "", _MISSING_KEY, _example(loc))
+
+
+def _example(loc: Loc) -> str:
+    """What a missing key is for; rings, posts and spindles say of a key that legs have too what legs say."""
+    where = _without_numbers(loc)
+    return _MISSING.get(where) or _MISSING.get("legs." + where.partition(".")[2], "")
 
 
 def missing(where: Loc) -> PydanticCustomError:
     """The error for a key that only some cases need."""
-    return refusal(_MISSING_KEY, _MISSING[_without_numbers(where)], given="")
+    return refusal(_MISSING_KEY, _example(where), given="")
 
 
 def _without_numbers(loc: Loc) -> str:
@@ -175,10 +189,12 @@ def _did_you_mean(key: str) -> str:
 
 
 def _called(table: str) -> str:
-    if table.startswith("seat"):
-        return "[seat]"
-    names = {"": "the top of the file, before any [table]", "legs": "[[legs]]"}
-    return names.get(table, "the mortise, as in mortise = { bit = 16, taper = 6 }")
+    first, _, inner = table.partition(".")
+    if first in ("", "seat", "wood"):
+        return f"[{first}]" if first else "the top of the file, before any [table]"
+    if inner == "mortise":
+        return "the mortise, as in mortise = { bit = 16, taper = 6 }"
+    return f"the {inner.rpartition('.')[2]} of [[{first}]]" if inner else f"[[{first}]]"
 
 
 def _choice(loc: Loc, error: ErrorDetails, _keys: Keys) -> Problem:

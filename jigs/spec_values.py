@@ -128,6 +128,40 @@ def pair(value: object) -> object:
     raise refusal("is not a pair of lengths", "write [x, y], such as [125, 70]")
 
 
+PAIR = BeforeValidator(pair)
+
+
+def triple(value: object) -> object:
+    """The value, if it is a list of three; what is in it is read after."""
+    if isinstance(value, list | tuple) and len(value) == 3:
+        return value
+    raise refusal("is not three lengths", "write [x, y, z], such as [0, 180, 1200]")
+
+
+def number(bounds: tuple[float, float]) -> BeforeValidator:
+    """Reads a plain number within bounds."""
+    low, high = bounds
+
+    def read(value: object) -> float:
+        if isinstance(value, bool) or not isinstance(value, int | float) or not low <= value <= high:
+            raise refusal(f"is not a number between {low:g} and {high:g}")
+        return float(value)
+
+    return BeforeValidator(read)
+
+
+def count(bounds: tuple[int, int]) -> BeforeValidator:
+    """Reads a whole number within bounds."""
+    low, high = bounds
+
+    def read(value: object) -> int:
+        if isinstance(value, bool) or not isinstance(value, int) or not low <= value <= high:
+            raise refusal(f"is not a whole number from {low} to {high}")
+        return value
+
+    return BeforeValidator(read)
+
+
 def points(value: object) -> object:
     """The value, unless it is a list of too few or too many."""
     if isinstance(value, list | tuple) and not POINTS[0] <= len(value) <= POINTS[1]:

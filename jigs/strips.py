@@ -43,10 +43,10 @@ class Strip:
 def strips(assembly: Assembly) -> tuple[Strip, ...]:
     """One strip for each different sightline; twins share theirs. A leg square to the face needs none."""
     made: list[Strip] = []
-    for leg in assembly.legs:
+    for leg in assembly.bored:
         if not leg.drill.leans:
             continue
-        back, ahead = edge_distances_mm(assembly, leg, assembly.drilled)
+        back, ahead = edge_distances_mm(assembly, leg, leg.drilled)
         for k, strip in enumerate(made):
             if _same(strip, leg, back, ahead):
                 made[k] = Strip((*strip.legs, leg), strip.back_mm, strip.ahead_mm)
@@ -59,6 +59,8 @@ def strips(assembly: Assembly) -> tuple[Strip, ...]:
 def _same(strip: Strip, leg: Leg, back_mm: float, ahead_mm: float) -> bool:
     a, b = strip.leg.drill, leg.drill
     turns = (a.resultant_deg - b.resultant_deg, a.sightline_deg - b.sightline_deg)
+    if strip.leg.drilled != leg.drilled:
+        return False
     near = max(abs(strip.back_mm - back_mm), abs(strip.ahead_mm - ahead_mm)) <= SAME_MM
     return near and max(map(abs, turns)) <= SAME_DEG and strip.leg.mortise == leg.mortise
 
@@ -71,7 +73,8 @@ def strip_pieces(assembly: Assembly) -> tuple[Piece, ...]:
 def _piece(assembly: Assembly, number: int, strip: Strip) -> Piece:
     drawing = gather([*_lines(strip), *_words(assembly, strip)])
     points = tuple((leg.name, (0.0, 0.0)) for leg in strip.legs)
-    notice = f"for the {assembly.drilled.upper()} · arrow to the foot"
+    faces = assembly.drilled_faces
+    notice = f"for the {faces[0].upper()} · arrow to the foot" if len(faces) == 1 else "each strip says its face"
     return Piece(f"strip {number}", "strips", "Sightline strips", drawing, "strip", notice, points)
 
 
@@ -99,9 +102,10 @@ def _words(assembly: Assembly, strip: Strip) -> Iterator[Text]:
         return Text((left, y), shortened(words, width, height, bold), height, bold=bold)
 
     yield fitted(", ".join(leg.name for leg in strip.legs), 9.0, 3.5, bold=True)
-    yield fitted(f"on the {assembly.drilled}, centre on the mortise", 3.0, 2.5)
+    yield fitted(f"on the {strip.leg.drilled}, centre on the mortise", 3.0, 2.5)
     yield fitted(f"bevel {format_angle(lean.bevel_deg)}  lean {format_angle(lean.resultant_deg)}", -6.5, 3.5, bold=True)
     yield fitted(f"{sight} {complement}", -12.5, 2.5)
-    yield Text((strip.ahead_mm + 2.0, -12.5), "FOOT", 3.5, bold=True)
+    end = "FOOT" if strip.leg.kind == "leg" else "TOP"
+    yield Text((strip.ahead_mm + 2.0, -12.5), end, 3.5, bold=True)
     for edge in (strip.back_mm, strip.ahead_mm):
         yield Text((edge, WIDTH_MM / 2 - 3.2), "edge", 2.0, align="centre")

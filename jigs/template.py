@@ -16,17 +16,19 @@ from jigs.legs import Leg
 from jigs.quantities import format_angle
 from jigs.spec import Mortise
 from layout.drawing import Drawing, Primitive, Role, Stroke, Text, gather
-from layout.geometry import Affine, Box, Curve, Point, along, bearing_deg, flatten, mapped
+from layout.geometry import Affine, Box, Curve, Point, along, bearing_deg, ellipse_curve, flatten, mapped
 from layout.lettering import text_width_mm
 from layout.operations import polylines
 from layout.piece import Piece
 from layout.room import Room
-from layout.shapes import LINE_PITCH, arrow, circle, cross, ellipse_curve, line
+from layout.shapes import LINE_PITCH, arrow, circle, cross, line
 
 # How far the centre line runs out past the seat, and a sightline past its edge, arrow's head included.
 CENTRE_RUN_MM, SIGHTLINE_RUN_MM = 8.0, 16.0
 # How far a sightline runs back from the mortise's centre, away from the foot: a card stands there.
 SIGHTLINE_BACK_MM = 75.0
+# A spindle stands among its like, so that a card stands there across its neighbours' lines; the line is only begun.
+SPINDLE_BACK_MM = 30.0
 # Chords of the outline used to find room for lettering.
 _ROOM_TOLERANCE_MM = 0.5
 # Directions of the grain by name, in degrees from the fore-and-aft line.
@@ -71,9 +73,9 @@ def template(assembly: Assembly, face: Face) -> Piece:
     seen = face_map(face)
     outline = mapped(assembly.blank.curve, seen)
     lines = gather(_lines(assembly, face, outline))
-    room = _room(outline, lines, [seen.point(leg.on_face(face)) for leg in assembly.legs])
+    room = _room(outline, lines, [(seen.point(leg.on_face(face)), leg) for leg in assembly.bored])
     words = gather(_words(assembly, face, room))
-    points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in assembly.legs)
+    points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in assembly.bored)
     title = f"Seat template, {face}"
     notice = f"{face.upper()} · front edge toward you" + _sides(face)
     return Piece(f"template {face}", "template", title, lines + words, "tile", notice, points)
@@ -88,7 +90,7 @@ def _lines(assembly: Assembly, face: Face, outline: Curve) -> Iterator[Drawing |
     yield Stroke(outline, Role.CUT, closed=True)
     bounds = assembly.blank.bounds
     yield line((0.0, bounds.y1 + CENTRE_RUN_MM), (0.0, bounds.y0 - CENTRE_RUN_MM), Role.CENTRE)
-    for leg in assembly.legs:
+    for leg in assembly.bored:
         yield from _leg_lines(assembly, leg, face, seen)
 
 
@@ -99,6 +101,9 @@ def _leg_lines(assembly: Assembly, leg: Leg, face: Face, seen: Affine) -> Iterat
             yield Stroke(mapped(ellipse, seen), role, closed=True)
     centre = seen.point(leg.on_face(face))
     bearing = seen_bearing(leg, face)
+    if not in_full(assembly, leg, face):
+        yield from cross(centre, 2.0, Role.SET_OUT, bearing).items if sections(leg, face) else ()
+        return
     if sections(leg, other_face(face)):
         yield cross(seen.point(leg.on_face(other_face(face))), 2.0, Role.HIDDEN, bearing)
     reach = leg.mortise.bit / 2 + 4.0
@@ -107,6 +112,14 @@ def _leg_lines(assembly: Assembly, leg: Leg, face: Face, seen: Affine) -> Iterat
     if leg.drill.leans:
         yield line(along(centre, bearing, -_back_mm(assembly, leg, face)), centre, Role.SET_OUT)
         yield arrow(centre, along(centre, bearing, _edge_mm(assembly, leg, face) + SIGHTLINE_RUN_MM), 7.0, Role.SET_OUT)
+
+
+def in_full(assembly: Assembly, leg: Leg, face: Face) -> bool:
+    """Whether a face shows all of a part's setting-out, and not only where it comes through.
+
+    It does on the face that the part is drilled from; on the other as well where all parts are drilled from one face.
+    """
+    return leg.drilled == face or len(assembly.drilled_faces) == 1
 
 
 def seen_bearing(leg: Leg, face: Face) -> float:
@@ -128,23 +141,26 @@ def _edge_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
 
 
 def _back_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
-    return min(SIGHTLINE_BACK_MM, -edge_distances_mm(assembly, leg, face)[0])
+    most = SIGHTLINE_BACK_MM if leg.kind != "spindle" else SPINDLE_BACK_MM
+    return min(most, -edge_distances_mm(assembly, leg, face)[0])
 
 
-def _room(outline: Curve, lines: Drawing, centres: list[Point]) -> Room:
+def _room(outline: Curve, lines: Drawing, centres: list[tuple[Point, Leg]]) -> Room:
     room = Room(flatten(outline, _ROOM_TOLERANCE_MM), edge_mm=3.0)
     for points in polylines(Drawing(lines.items[1:]), _ROOM_TOLERANCE_MM):
         room.take(points, 2.0)
-    for x, y in centres:
-        room.take_box(Box(x, y, x, y).grown(12.0))
+    for (x, y), leg in centres:
+        room.take_box(Box(x, y, x, y).grown(12.0 if leg.kind != "spindle" else leg.mortise.bit / 2))
     return room
 
 
 def _words(assembly: Assembly, face: Face, room: Room) -> Iterator[Drawing]:
     bounds = assembly.blank.bounds
     yield _front(bounds, room)
-    for leg in assembly.legs:
-        yield _first_fit(room, _leg_words(assembly, leg, face), face_map(face).point(leg.on_face(face)))
+    for leg in assembly.bored:
+        words = _leg_words(assembly, leg, face)
+        if words:
+            yield _first_fit(room, words, face_map(face).point(leg.on_face(face)))
     yield _first_fit(room, _title_words(assembly, face), (0.0, bounds.y0 + 0.62 * bounds.height))
     if len(assembly.legs) > 1:
         yield _first_fit(room, _proof_words(assembly, face), (0.0, bounds.y0 + 0.4 * bounds.height))
@@ -171,14 +187,18 @@ def _first_fit(room: Room, sizes: tuple[Lettered, ...], wanted: Point) -> Drawin
 
 def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Lettered, ...]:
     name = (leg.name, 3.5, True)
+    if not in_full(assembly, leg, face):
+        return (Lettered(((leg.name, 2.5, False),)),) if sections(leg, face) else ()
+    if leg.kind == "spindle":
+        return (Lettered(((leg.name, 2.5, True), (f"lean {format_angle(leg.drill.resultant_deg)}", 2.5, False))),)
     hole = (bore_words(assembly, leg), 2.5, False)
     if not leg.drill.leans:
         return (Lettered((name, ("square to the face", 2.5, False), hole)),)
     lean, bevel = format_angle(leg.drill.resultant_deg), format_angle(leg.drill.bevel_deg)
     sight, complement = sightline_words(leg)
     rest = [(complement, 2.5, False), hole]
-    if face == assembly.drilled:
-        toward = "to" if face == "underside" else "away from"
+    if face == leg.drilled:
+        toward = "to" if leg.leans_with_bit else "away from"
         rest.append((f"the bit leans {toward} the arrow", 2.5, False))
     large = [name, (f"lean {lean}", 5.0, True), (f"bevel {bevel}", 3.5, False), (sight, 3.5, False), *rest]
     middling = [name, (f"lean {lean}  bevel {bevel}", 3.5, False), (sight, 2.5, False), *rest]
@@ -204,8 +224,18 @@ def bore_words(assembly: Assembly, leg: Leg) -> str:
     return words + (", through" if mortise.depth is None else f", {assembly.length(bored_mm(leg))} deep")
 
 
+def _role(assembly: Assembly, face: Face) -> str:
+    """What is bored from a face."""
+    here = [leg.kind for leg in assembly.bored if leg.drilled == face]
+    if not here:
+        return "not the face to bore from"
+    if len(here) == len(assembly.bored):
+        return "bore from this face"
+    return f"bore the {' and '.join(f'{kind}s' for kind in dict.fromkeys(here))} from this face"
+
+
 def _title_words(assembly: Assembly, face: Face) -> tuple[Lettered, ...]:
-    role = "bore from this face" if face == assembly.drilled else "not the face to bore from"
+    role = _role(assembly, face)
     left = "left legs are on your right" if face == "underside" else "left legs are on your left"
     name = assembly.furniture.name
     lines = ((f"{face.upper()}", 7.0, True), (name, 3.5, False), (role, 3.5, False), (left, 2.5, False))
@@ -221,7 +251,8 @@ def proofs(assembly: Assembly, face: Face) -> tuple[tuple[str, str, float], ...]
 
     The neighbours round the seat first, then the longest others.
     """
-    legs = sorted(assembly.legs, key=lambda leg: _turn_about_middle(assembly, leg))
+    drilled = [leg for leg in assembly.bored if leg.drilled == face and leg.kind != "spindle"]
+    legs = sorted(drilled if len(drilled) > 1 else assembly.legs, key=lambda leg: _turn_about_middle(assembly, leg))
     if len(legs) == 2:
         pairs = [(legs[0], legs[1])]
     else:

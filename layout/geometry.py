@@ -204,7 +204,12 @@ class Cubic:
 
     def at(self, t: float) -> Point:
         """The point at parameter t."""
-        return self.part(0.0, t).end if 0.0 < t < 1.0 else (self.start if t <= 0.0 else self.end)
+        if not 0.0 < t < 1.0:
+            return self.start if t <= 0.0 else self.end
+        s = 1.0 - t
+        a, b, c, d = s * s * s, 3 * s * s * t, 3 * s * t * t, t * t * t
+        (x0, y0), (x1, y1), (x2, y2), (x3, y3) = self.start, self.first, self.second, self.end
+        return (a * x0 + b * x1 + c * x2 + d * x3, a * y0 + b * y1 + c * y2 + d * y3)
 
     def mapped(self, m: Affine) -> Cubic:
         """The segment under an affine map."""
@@ -384,6 +389,17 @@ def flatten(curve: Curve, tolerance_mm: float) -> list[Point]:
 def mapped(curve: Curve, m: Affine) -> Curve:
     """The curve under an affine map."""
     return tuple(segment.mapped(m) for segment in curve)
+
+
+def circle_curve(centre: Point, radius_mm: float) -> tuple[Arc]:
+    """A full circle, counter-clockwise from the right."""
+    return (Arc(centre, (radius_mm, 0.0), (0.0, radius_mm), 0.0, 360.0),)
+
+
+def ellipse_curve(centre: Point, along_mm: float, across_mm: float, angle_deg: float) -> tuple[Arc]:
+    """A full ellipse: half-axis `along_mm` in the direction `angle_deg`, `across_mm` square to it."""
+    turn = Affine.turn(angle_deg)
+    return (Arc(centre, turn.vector((along_mm, 0.0)), turn.vector((0.0, across_mm)), 0.0, 360.0),)
 
 
 def arc_as_cubics(arc: Arc, tolerance_mm: float) -> tuple[Cubic, ...]:

@@ -10,7 +10,7 @@ import math
 from collections.abc import Sequence
 
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
-from layout.geometry import Affine, Arc, Box, Curve, Line, Point, along, bearing_deg
+from layout.geometry import Box, Curve, Line, Point, along, bearing_deg, circle_curve
 from layout.lettering import wrap
 
 # Line pitch over capital height: ISO 3098-1 asks for at least 1.4 without accents, 1.9 with; ours carries accents.
@@ -42,20 +42,9 @@ def box_outline(box: Box, role: Role) -> Stroke:
     return polyline(box.corners(), role, closed=True)
 
 
-def circle_curve(centre: Point, radius_mm: float) -> tuple[Arc]:
-    """A full circle, counter-clockwise from the right."""
-    return (Arc(centre, (radius_mm, 0.0), (0.0, radius_mm), 0.0, 360.0),)
-
-
 def circle(centre: Point, radius_mm: float, role: Role) -> Stroke:
     """A circle."""
     return Stroke(circle_curve(centre, radius_mm), role, closed=True)
-
-
-def ellipse_curve(centre: Point, along_mm: float, across_mm: float, angle_deg: float) -> tuple[Arc]:
-    """A full ellipse: half-axis `along_mm` in the direction `angle_deg`, `across_mm` square to it."""
-    turn = Affine.turn(angle_deg)
-    return (Arc(centre, turn.vector((along_mm, 0.0)), turn.vector((0.0, across_mm)), 0.0, 360.0),)
 
 
 def cross(centre: Point, reach_mm: float, role: Role, angle_deg: float = 0.0) -> Drawing:

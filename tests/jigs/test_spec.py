@@ -208,7 +208,10 @@ def test_what_is_read_cannot_be_changed() -> None:
 
 SHAPES = '"round", "oval", "rectangle", "d", "shield", "polygon" or "path"'
 LENGTH = 'write 400, "400 mm" or "15 3/4 in"'
-LEG_KEYS = "name, at, mirror, splay, rake, end, mortise, diameter, foot_diameter"
+LEG_KEYS = (
+    "name, at, mirror, resultant, sightline, foot_across, foot_along, inside_side, inside_end, axis, equal_from, "
+    "picture, measured, aim_at, angles_from, splay, rake, end, face_fall, face_toward, mortise, diameter, foot_diameter"
+)
 
 ONE_CHANGE = [
     ("splay = 12", "splay = 95", "legs[0].splay: 95 is not between -45 and 45 degrees"),

@@ -8,10 +8,10 @@ from itertools import combinations
 from shapely.geometry import Polygon
 
 from layout.drawing import Drawing, Role, Stroke, Text, gather
-from layout.geometry import Box
+from layout.geometry import Box, ellipse_curve
 from layout.operations import text_corners
 from layout.piece import Piece
-from layout.shapes import box_outline, cross, ellipse_curve, line, paragraph
+from layout.shapes import box_outline, cross, line, paragraph
 
 NOTICE = "UNDERSIDE · front edge toward you · legs named left lie to your RIGHT"
 

@@ -120,9 +120,7 @@ def test_a_side_as_long_as_a_page_has_three_marks() -> None:
 
 
 @pytest.mark.parametrize(("piece", "paper", "tiling"), TILED, ids=CASES)
-def test_marks_stand_clear_of_the_drawing_where_the_strip_has_room(
-    piece: Piece, paper: Paper, tiling: Tiling
-) -> None:
+def test_marks_stand_clear_of_the_drawing_where_the_strip_has_room(piece: Piece, paper: Paper, tiling: Tiling) -> None:
     ink = unary_union([LineString([tiling.laid.point(p) for p in points]) for points in polylines(piece.drawing, 0.05)])
     marks = place_marks(tiling)
     for mark in marks:
@@ -155,9 +153,7 @@ def test_words_and_marks_of_a_page_keep_clear_of_one_another(piece: Piece, paper
 
 
 @pytest.mark.parametrize(("piece", "paper", "tiling"), TILED, ids=CASES)
-def test_each_page_draws_a_circle_and_the_id_for_each_of_its_marks(
-    piece: Piece, paper: Paper, tiling: Tiling
-) -> None:
+def test_each_page_draws_a_circle_and_the_id_for_each_of_its_marks(piece: Piece, paper: Paper, tiling: Tiling) -> None:
     marks = place_marks(tiling)
     for tile, to_page, own in _pages(tiling, paper):
         drawing = seam_drawing(tiling, marks, tile, to_page)

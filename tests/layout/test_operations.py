@@ -10,7 +10,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from layout.drawing import Drawing, Fill, Role, Stroke, Text, gather
-from layout.geometry import Affine, Arc, Box, Cubic, Line, bearing_deg, flatten
+from layout.geometry import Affine, Arc, Box, Cubic, Line, bearing_deg, circle_curve, ellipse_curve, flatten
 from layout.lettering import FALL, RISE, text_width_mm
 from layout.operations import (
     FILL_TOLERANCE_MM,
@@ -22,7 +22,7 @@ from layout.operations import (
     text_corners,
     transform,
 )
-from layout.shapes import box_outline, circle, circle_curve, ellipse_curve, line, polygon_curve, polyline
+from layout.shapes import box_outline, circle, line, polygon_curve, polyline
 
 modest = settings(max_examples=40, deadline=None)
 mm = st.floats(-200, 200)
@@ -125,9 +125,7 @@ def test_a_closed_curve_that_starts_inside_the_box_is_not_parted_at_its_start():
     # The square starts at its lower left corner, which is the only one inside.
     square = polyline([(0.0, 0.0), (50.0, 0.0), (50.0, 50.0), (0.0, 50.0)], Role.CUT, closed=True)
     kept = clip(Drawing((square,)), Box(-10.0, -10.0, 20.0, 20.0)).items
-    assert kept == (
-        Stroke((Line((0.0, 20.0), (0.0, 0.0)), Line((0.0, 0.0), (20.0, 0.0))), Role.CUT),
-    )
+    assert kept == (Stroke((Line((0.0, 20.0), (0.0, 0.0)), Line((0.0, 0.0), (20.0, 0.0))), Role.CUT),)
 
 
 def test_an_open_curve_that_ends_where_it_starts_stays_in_two_runs():

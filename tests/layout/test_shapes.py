@@ -9,7 +9,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
-from layout.geometry import Box, Line, bearing_deg, flatten
+from layout.geometry import Box, Line, bearing_deg, circle_curve, ellipse_curve, flatten
 from layout.lettering import text_width_mm
 from layout.operations import bounds, text_corners
 from layout.shapes import (
@@ -19,9 +19,7 @@ from layout.shapes import (
     box_outline,
     chain,
     circle,
-    circle_curve,
     cross,
-    ellipse_curve,
     line,
     measure,
     paragraph,

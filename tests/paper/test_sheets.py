@@ -1,4 +1,4 @@
-"""The real output of every demo, measured by readers that know nothing of the writer: pypdf's numbers, PDFium's pixels."""
+"""The real output of every demo, measured by readers that know nothing of the writer: pypdf for numbers, PDFium for dots."""
 
 from __future__ import annotations
 

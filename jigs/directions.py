@@ -1,0 +1,164 @@
+"""Which way each leg leans, from whatever its table says: two angles, any two knowns, a picture, a chair, a point.
+
+Owns the reading of a leg's table into one direction, and what a maker is told of it. Imports `solve`, `starts`,
+`pictures`, `legs`, the spec's models; no sheets.
+"""
+
+from __future__ import annotations
+
+from collections.abc import Mapping
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, NamedTuple
+
+from jigs.frames import SeatFrame, Vector
+from jigs.knowns import CannotSolve
+from jigs.legs import direction_of
+from jigs.quantities import Units
+from jigs.seats import Blank
+from jigs.spec_legs import START_KEYS, LegSpec, Picture, PostSpec
+from layout.geometry import Point
+
+if TYPE_CHECKING:
+    from jigs.known_curves import Stance
+
+# Knowns that a table may give, by the keys that name them.
+_ANGLES = ("splay", "rake", "resultant", "sightline")
+_LENGTHS = ("foot_across", "foot_along", "inside_side", "inside_end", "axis")
+
+
+class Place(NamedTuple):
+    """Where one part stands: its mortise's centre on the drilled face, its side and end as for `legs`."""
+
+    at_mm: Point
+    side: int
+    end: int
+
+
+@dataclass(frozen=True)
+class Seating:
+    """The seat as a leg meets it."""
+
+    frame: SeatFrame
+    thickness_mm: float
+    drilled_from_top: bool
+    blank: Blank
+    units: Units
+
+
+class Direction(NamedTuple):
+    """A direction (x, y, -1) in the floor frame, and a sentence for the maker where there is something to say."""
+
+    vector: Vector
+    note: str = ""
+
+
+def leg_direction(
+    spec: LegSpec, place: Place, seating: Seating, neighbours: tuple[Point, Point] | None = None
+) -> Direction:
+    """The direction of one leg from mortise to foot; `neighbours` are the feet that `equal_from` names.
+
+    Raises CannotSolve, with what would do, for too little, too much, or what no leg has.
+    """
+    starts = [key for key in START_KEYS if getattr(spec, key) is not None]
+    knowns = _knowns(spec, place.side)
+    if starts:
+        _alone(starts, knowns)
+        return _started(spec, place, seating)
+    if set(knowns) == {"splay", "rake"} and spec.angles_from == "plumb" and neighbours is None:
+        return Direction(direction_of(knowns["splay"], knowns["rake"], place.side, place.end))
+    return _solved(knowns, place, seating, spec.angles_from == "seat", spec.foot_diameter, neighbours)
+
+
+def post_direction(spec: PostSpec, place: Place, seating: Seating) -> Direction:
+    """The direction of one post as that of its mirror image below the seat: (x, y, -1) for a post along (x, y, +1)."""
+    mirrored = Seating(
+        SeatFrame(-seating.frame.pitch_deg, seating.frame.height_mm),
+        seating.thickness_mm,
+        True,
+        seating.blank,
+        seating.units,
+    )
+    knowns = {key: value for key in _ANGLES if (value := getattr(spec, key)) is not None}
+    if place.side == 0:
+        knowns.pop("splay", None)
+    if set(knowns) == {"splay", "rake"} and spec.angles_from == "plumb":
+        return Direction(direction_of(knowns["splay"], knowns["rake"], place.side, place.end))
+    return _solved(knowns, place, mirrored, spec.angles_from == "seat", spec.end_diameter, None)
+
+
+def _knowns(spec: LegSpec, side: int) -> dict[str, float]:
+    found = {key: value for key in (*_ANGLES, *_LENGTHS) if (value := getattr(spec, key)) is not None}
+    if side == 0 and found.get("splay") == 0.0:
+        # A leg on the centre line has its splay of 0 from its place; with a rake that is two.
+        return found if "rake" in found and len(found) == 2 else {k: v for k, v in found.items() if k != "splay"}
+    return found
+
+
+def _alone(starts: list[str], knowns: Mapping[str, float]) -> None:
+    others = [*starts[1:], *(key for key in knowns if not (key == "splay" and knowns[key] == 0.0))]
+    if others:
+        given = " and ".join([starts[0], others[0]])
+        raise CannotSolve(f"{given} both say how the leg leans", f"keep {starts[0]} alone, or leave it out")
+
+
+def _started(spec: LegSpec, place: Place, seating: Seating) -> Direction:
+    from jigs.starts import aim, from_copy  # noqa: PLC0415 - most chairs start from angles
+
+    if spec.picture is not None:
+        return _from_picture(spec.picture, place)
+    if spec.measured is not None:
+        m = spec.measured
+        splay, rake = from_copy(m.heights, m.across, m.along, place.side, place.end)
+        return Direction(direction_of(splay, rake, place.side, place.end))
+    assert spec.aim_at is not None  # one of the three starts is given
+    x, y, z = spec.aim_at
+    # A twin aims at the twin of the point.
+    point = (-x if spec.mirror and place.at_mm[0] * spec.at[0] < 0.0 else x, y, z)
+    return Direction(aim(point, _stance(place, seating, spec.foot_diameter).mortise))
+
+
+def _from_picture(picture: Picture, place: Place) -> Direction:
+    from jigs.pictures import Sight, from_picture  # noqa: PLC0415 - most chairs start from angles
+
+    def sight(table: object) -> Sight | None:
+        if table is None:
+            return None
+        data = table.model_dump()  # type: ignore[attr-defined]
+        return Sight(data["level"], data["leg"], data["known"], data["known_length"])
+
+    side_view = sight(picture.side)
+    assert side_view is not None  # the table must have one
+    # The front picture shows the right leg as the plan has it; a twin on the left is its mirror image.
+    lean = from_picture(
+        sight(picture.front), side_view, abs(place.side), place.end, picture.taken_from, picture.pointing
+    )
+    return Direction(direction_of(lean.splay_deg, lean.rake_deg, place.side, place.end), lean.note)
+
+
+def _solved(
+    knowns: Mapping[str, float],
+    place: Place,
+    seating: Seating,
+    from_seat: bool,
+    foot_mm: float,
+    neighbours: tuple[Point, Point] | None,
+) -> Direction:
+    from jigs.solve import solve  # noqa: PLC0415 - most chairs give splay and rake, which need no solving
+
+    stance = _stance(place, seating, foot_mm)
+    found = solve(stance, knowns, from_seat, seating.blank, neighbours, seating.units)
+    return Direction(found.direction, found.note)
+
+
+def _stance(place: Place, seating: Seating, foot_mm: float) -> Stance:
+    from jigs.known_curves import Stance  # noqa: PLC0415 - as above
+
+    return Stance(
+        place.at_mm,
+        seating.frame,
+        seating.thickness_mm,
+        seating.drilled_from_top,
+        place.side,
+        place.end,
+        foot_mm,
+    )

@@ -1,0 +1,34 @@
+"""Places evenly along a straight or arc line in plan: the deck of a row of spindles, and its crest.
+
+Owns the spacing. Imports `knowns` and `layout.geometry`.
+"""
+
+from __future__ import annotations
+
+import math
+
+from jigs.knowns import CannotSolve
+from layout.geometry import Point
+
+
+def row_places(width_mm: float, back_mm: float, bow_mm: float, count: int) -> tuple[Point, ...]:
+    """`count` places from left to right, as far from each other along the line as each from the next.
+
+    The ends are `width_mm` apart, to either side of the centre line; the middle lies `back_mm` from the front edge and
+    `bow_mm` behind the ends (negative: in front of them). Equal chords of the arc, so that one setting of the dividers
+    steps off the row. Raises CannotSolve for an arc of more than half a circle.
+    """
+    half = width_mm / 2
+    if abs(bow_mm) > half:
+        raise CannotSolve(
+            f"a bow of {abs(bow_mm):.1f} mm is more than half of the width, {half:.1f} mm", "give a flatter arc"
+        )
+    shares = [2 * k / (count - 1) - 1 for k in range(count)]
+    if bow_mm == 0.0 or half == 0.0:
+        return tuple((half * share, back_mm) for share in shares)
+    radius = (half**2 + bow_mm**2) / (2 * abs(bow_mm))
+    turn = math.asin(min(1.0, half / radius))
+    sign = math.copysign(1.0, bow_mm)
+    return tuple(
+        (radius * math.sin(turn * share), back_mm - sign * radius * (1 - math.cos(turn * share))) for share in shares
+    )
