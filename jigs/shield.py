@@ -57,7 +57,7 @@ def _bow(width: float, depth: float, bow: float | None, units: Units) -> float:
     most = min(MOST_BOW_OF_DEPTH * depth, MOST_BOW_OF_WIDTH * width)
     if bow is None:
         return min(BOW * depth, most)
-    if bow > most:
+    if bow > most + ARC_FIT_MM:
         rule = "is more than a quarter of the seat's depth or a sixth of its width"
         cure = f"give at most {at_most(most, units)}"
         raise OutlineError("seat.front_bow", format_length(bow, units), rule, cure)

@@ -305,6 +305,16 @@ class WoodTable(Table):
     seat: Name | None = None
     legs: Name | None = None
 
+    @field_validator("seat", "legs")
+    @classmethod
+    def _known_species(cls, name: str | None) -> str | None:
+        from jigs.wood import UnknownSpeciesError, species_name  # noqa: PLC0415 - only a file that names its wood
+
+        try:
+            return None if name is None else species_name(name)
+        except UnknownSpeciesError as error:
+            raise refusal(error.rule, error.cure) from None
+
 
 def on_centre_line(at: tuple[float, float]) -> bool:
     """Whether a place in plan is on the centre line."""

@@ -12,6 +12,7 @@ from dataclasses import dataclass
 
 from jigs.assembly import Assembly, Face, other_face
 from jigs.bores import bored_mm, mouth_mm, sections
+from jigs.grain import GRAIN_DEG
 from jigs.legs import Leg
 from jigs.quantities import format_angle
 from jigs.spec import Mortise
@@ -31,8 +32,6 @@ SIGHTLINE_BACK_MM = 75.0
 SPINDLE_BACK_MM = 30.0
 # Chords of the outline used to find room for lettering.
 _ROOM_TOLERANCE_MM = 0.5
-# Directions of the grain by name, in degrees from the fore-and-aft line.
-GRAIN_DEG = {"fore-and-aft": 0.0, "across": 90.0}
 # No more proof lengths than a maker will measure.
 MOST_PROOFS = 8
 

@@ -31,12 +31,13 @@ GROUND = {"geometry", "drawing", "shapes", "lettering", "operations", "piece", "
 WRITERS = {"pdf", "report"}
 WRITERS_READ = GROUND | {"document", "faces", "ink"}
 
+SPEC = tuple(f"jigs/spec{part}.py" for part in ("", "_base", "_legs", "_problems", "_seats", "_values"))
 # Where each library may be imported. An output library in its writer alone; numpy and shapely where there is geometry.
 LIBRARIES = {
     "click": ("cli/",),
     "reportlab": ("layout/pdf.py",),
-    "pydantic": ("jigs/spec.py", "jigs/spec_values.py", "jigs/spec_problems.py"),
-    "pydantic_core": ("jigs/spec.py", "jigs/spec_values.py", "jigs/spec_problems.py"),
+    "pydantic": SPEC,
+    "pydantic_core": SPEC,
     "fontTools": ("jigs/path_data.py",),
     "numpy": ("jigs/", "layout/"),
     "shapely": ("jigs/", "layout/"),

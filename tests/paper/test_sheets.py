@@ -1,4 +1,4 @@
-"""The real output of every demo, measured by readers that know nothing of the writer: pypdf for numbers, PDFium for dots."""
+"""The real output of every demo, measured by readers apart from the writer: pypdf for numbers, PDFium for pixels."""
 
 from __future__ import annotations
 
