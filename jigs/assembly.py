@@ -13,7 +13,7 @@ from dataclasses import dataclass
 from itertools import combinations
 from typing import TYPE_CHECKING
 
-from jigs.bores import least_web_mm, sections, web_mm
+from jigs.bores import least_web_mm, sections, web_mm, wood_above_mm
 from jigs.directions import Seating
 from jigs.frames import SeatFrame
 from jigs.legs import Face, Leg
@@ -92,7 +92,12 @@ def assemble(furniture: Furniture, source: str) -> Assembly:
     problems = members.problems
     stretchers, bars = _stretchers(furniture, frame, (*legs, *posts), problems)
     assembly = Assembly(furniture, blank, frame, legs, posts, spindles, stretchers, bars, tuple(members.notes))
-    problems += [*_off_the_blank(assembly), *_blind_from_top(furniture), *_bores_that_meet(assembly)]
+    problems += [
+        *_off_the_blank(assembly),
+        *_blind_from_top(furniture),
+        *_too_deep(assembly),
+        *_bores_that_meet(assembly),
+    ]
     if problems:
         raise SpecError(source, tuple(problems))
     return assembly
@@ -174,6 +179,17 @@ def _blind_from_top(furniture: Furniture) -> Iterator[Problem]:
             rule = "cannot be: a leg enters from below, so a mortise to a depth is bored from the underside"
             cure = 'set drill_from = "underside", or leave depth out to bore through'
             yield Problem(f"{leg_place(index)}.mortise.depth", given, rule, cure)
+
+
+def _too_deep(assembly: Assembly) -> Iterator[Problem]:
+    """Blind mortises that come out: the paper would say a depth that the seat does not have."""
+    for leg in assembly.bored:
+        left = wood_above_mm(leg, assembly.thickness_mm)
+        if left is not None and left <= 0.0:
+            most = (leg.mortise.depth or 0.0) + left / math.cos(math.radians(leg.seat.resultant_deg))
+            rule = f"breaks out at the {other_face(leg.enters)} by {assembly.length(-left)}"
+            cure = f"bore less than {assembly.length(most)} deep, or leave depth out to bore through"
+            yield Problem(f"{leg.place}.mortise.depth", f"{leg.name}'s mortise", rule, cure)
 
 
 def _bores_that_meet(assembly: Assembly) -> Iterator[Problem]:

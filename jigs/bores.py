@@ -59,7 +59,7 @@ def taper_widening(mortise: Mortise) -> float:
 
 def bored_mm(leg: Leg) -> float:
     """How deep the mortise is along the axis, from the face that the part enters for a blind one, else through."""
-    return leg.in_seat_mm if leg.mortise.depth is None else min(leg.mortise.depth, leg.in_seat_mm)
+    return leg.in_seat_mm if leg.mortise.depth is None else leg.mortise.depth
 
 
 def mouth_mm(leg: Leg) -> float:

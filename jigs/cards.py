@@ -59,7 +59,7 @@ def net(lean_deg: float) -> Net:
     A wall that leans back is made longer at the foot so that its top edge keeps some width.
     """
     run = HEIGHT_MM * math.tan(math.radians(lean_deg))
-    foot = max(FOOT_MM, _TOP_MM - run)
+    foot = foot_mm(lean_deg)
     base, top = (foot, 0.0), (foot + run, HEIGHT_MM)
     return Net(
         lean_deg=lean_deg,
@@ -70,6 +70,11 @@ def net(lean_deg: float) -> Net:
         wall_tab_fold=((0.0, 0.0), base),
         wall_buttress_fold=((0.0, 0.0), (0.0, HEIGHT_MM)),
     )
+
+
+def foot_mm(lean_deg: float) -> float:
+    """How long a card's wall is at its foot, which is what it needs of the seat."""
+    return max(FOOT_MM, _TOP_MM - HEIGHT_MM * math.tan(math.radians(lean_deg)))
 
 
 @dataclass(frozen=True)
@@ -111,7 +116,9 @@ def cards(assembly: Assembly) -> tuple[Card, ...]:
 
 def _cards_for(parts: tuple[Leg, ...], within_deg: float) -> Iterator[Card]:
     for kind, on, toward in _KINDS:
-        for angle, half, legs in _shared(parts, [_angle(leg, kind) for leg in parts], within_deg):
+        # A part on the centre line has no side to splay to.
+        sided = [leg for leg in parts if leg.side or kind != "splay"]
+        for angle, half, legs in _shared(sided, [_angle(leg, kind) for leg in sided], within_deg):
             shank = 1.0 if legs[0].leans_with_bit else -1.0
             names = tuple(leg.name for leg in legs)
             yield Card(kind, shank * angle, names, on, toward[legs[0].kind], legs[0].drilled, half)
@@ -145,7 +152,8 @@ def _shared(legs: Sequence[Leg], angles: list[float], within_deg: float) -> list
 
 def card_pieces(assembly: Assembly) -> tuple[Piece, ...]:
     """Every card of the furniture, standing ones first, then the angles to set a sliding bevel to."""
-    standing = [_card_piece(assembly, number, card) for number, card in enumerate(cards(assembly), 1)]
+    made = cards(assembly)
+    standing = [_card_piece(assembly, number, card, _number(card, made)) for number, card in enumerate(made, 1)]
     groups = [
         group
         for parts, within in (
@@ -163,9 +171,17 @@ def _notice(assembly: Assembly) -> str:
     return f"for boring from the {faces[0].upper()}" if len(faces) == 1 else "each card says on which face it stands"
 
 
-def _card_piece(assembly: Assembly, number: int, card: Card) -> Piece:
+def _number(card: Card, made: tuple[Card, ...]) -> str:
+    """The card's angle as printed: to a tenth, or finer where another card of its kind would read the same."""
+    alike = [other for other in made if other is not card and (other.kind, other.face) == (card.kind, card.face)]
+    angle = abs(card.lean_deg)
+    twin = any(format_angle(abs(other.lean_deg)) == format_angle(angle) for other in alike)
+    return format_angle(angle, 2 if twin else 1)
+
+
+def _card_piece(assembly: Assembly, number: int, card: Card, angle: str) -> Piece:
     shape = net(card.lean_deg)
-    drawing = gather([*_net_lines(shape), *_wall_words(card, shape), _tab_words(shape)])
+    drawing = gather([*_net_lines(shape), *_wall_words(card, shape, angle), _tab_words(shape)])
     notice = _notice(assembly)
     return Piece(f"card {number} {card.kind}", "cards", "Angle cards", drawing, "pack", notice, stock="card")
 
@@ -176,25 +192,25 @@ def _net_lines(shape: Net) -> Iterator[Drawing]:
     yield Drawing((line(*shape.wall_tab_fold, Role.FOLD), line(*shape.wall_buttress_fold, Role.FOLD)))
 
 
-def _wall_words(card: Card, shape: Net) -> Iterator[Drawing]:
+def _wall_words(card: Card, shape: Net, angle: str) -> Iterator[Drawing]:
     """Words on the wall: the angle large, what it is, whose it is, the arrow that must agree with the template's."""
     left, width = 4.0, min(shape.leaning_edge[0][0], shape.leaning_edge[1][0]) - 8.0
     y = HEIGHT_MM - 15.0
-    yield Drawing((Text((left, y), format_angle(abs(card.lean_deg)), 8.0, bold=True),))
+    yield Drawing((Text((left, y), angle, 8.0, bold=True),))
     if card.kind == "resultant":
         yield Drawing((Text((left, y - 7.5), f"bevel {format_angle(90.0 - abs(card.lean_deg))}", 3.5),))
         y -= 7.5
     what = {"resultant": "lean of the bit", "splay": "splay of the bit", "rake": "rake of the bit"}[card.kind]
     block, y = paragraph((left, y - 4.0), what, 3.5, width, bold=True)
     yield block
-    names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 4.5 * width, 2.5), 2.5, width)
+    names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 2.7 * width, 2.5), 2.5, width)
     yield names
     if card.within_deg > SAME_ANGLE_DEG:
         block, y = paragraph((left, y - 1.0), f"all within {format_angle(card.within_deg, 2)}", 2.5, width)
         yield block
     for words in (
-        f"stand the fold on {card.line}, on the {card.face}",
-        "the edge on the right leans with the bit",
+        f"stand the fold on {card.line}, on the {card.face}, leaning edge at the mortise",
+        "that edge, on the right, leans with the bit",
     ):
         block, y = paragraph((left, y - 2.0), words, 2.5, width)
         yield block

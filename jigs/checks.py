@@ -193,9 +193,8 @@ def _floors(assembly: Assembly) -> Iterator[Finding]:
     for part in assembly.bored:
         above = wood_above_mm(part, assembly.thickness_mm)
         if above is not None and above < THIN_FLOOR_MM:
-            state = f"leaves {assembly.length(above)} of wood" if above > 0.0 else "breaks out"
-            far = other_face(part.enters)
-            yield Finding(part, "thin-floor", f"the mortise {state} at the {far}; bore less deep", above)
+            text = f"the mortise leaves {assembly.length(above)} of wood at the {other_face(part.enters)}"
+            yield Finding(part, "thin-floor", f"{text}; bore less deep", above)
 
 
 def _steep(assembly: Assembly) -> Iterator[Finding]:

@@ -11,6 +11,7 @@ from pathlib import Path
 from typing import Annotated, Literal, get_args
 
 from pydantic import BaseModel, BeforeValidator, Field, ValidationError, ValidationInfo, field_validator
+from pydantic_core import ErrorDetails
 
 from jigs import spec_values as values
 from jigs.problems import Problem, SpecError, shown
@@ -35,6 +36,7 @@ from jigs.spec_legs import (
 )
 from jigs.spec_problems import MOST_PROBLEMS, FileOrder, Keys, Loc, missing, place, problems_of, refusal
 from jigs.spec_seats import (
+    AnySeat,
     DSeat,
     OvalSeat,
     PathSeat,
@@ -166,12 +168,25 @@ def parse_spec(data: bytes, source: str) -> Furniture:
         furniture = Furniture.model_validate(tree, context={"units": units if known_units else "mm"})
     except ValidationError as error:
         # Without units no length is too long or too short.
-        errors = [e for e in error.errors(include_url=False) if known_units or e["type"] != "length_bounds"]
+        found_errors = [*error.errors(include_url=False), *_of_unknown_shape(error, tree, units)]
+        errors = [e for e in found_errors if known_units or e["type"] != "length_bounds"]
         found = [*problems_of(errors, tree, _keys()), *names]
         raise SpecError(source, _first(found, tree, len(errors) + len(names))) from None
     if names:
         raise SpecError(source, _first(names, tree, len(names)))
     return furniture
+
+
+def _of_unknown_shape(error: ValidationError, tree: dict[str, object], units: object) -> list[ErrorDetails]:
+    """What else is wrong with a seat whose shape is not known, which pydantic then looks at no further."""
+    if not any(e["loc"] == ("seat",) and e["type"].startswith("union_tag") for e in error.errors(include_url=False)):
+        return []
+    try:
+        AnySeat.model_validate(tree["seat"], context={"units": units if units in ("mm", "in") else "mm"})
+    except ValidationError as seat_error:
+        found = seat_error.errors(include_url=False)
+        return [ErrorDetails(**{**e, "loc": ("seat", "", *e["loc"])}) for e in found]
+    return []
 
 
 def _first(found: list[tuple[Loc, Problem]], tree: dict[str, object], count: int) -> tuple[Problem, ...]:

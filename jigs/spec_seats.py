@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Annotated, Any, Literal
 
-from pydantic import BeforeValidator, Field, PlainValidator, PrivateAttr, ValidationInfo, field_validator
+from pydantic import BeforeValidator, ConfigDict, Field, PlainValidator, PrivateAttr, ValidationInfo, field_validator
 
 from jigs import spec_values as values
 from jigs.quantities import MM_PER_INCH, format_length
@@ -157,6 +157,12 @@ class PathSeat(SeatBase):
     def unit_mm(self) -> float:
         """Millimetres in one unit of the path's numbers."""
         return self._unit_mm
+
+
+class AnySeat(SeatBase):
+    """What can be said of a seat whose shape is not known: all but its outline."""
+
+    model_config = ConfigDict(extra="ignore", frozen=True, defer_build=True)
 
 
 Seat = RoundSeat | OvalSeat | RectangleSeat | DSeat | ShieldSeat | PolygonSeat | PathSeat

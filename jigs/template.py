@@ -12,6 +12,7 @@ from dataclasses import dataclass
 
 from jigs.assembly import Assembly, Face, other_face
 from jigs.bores import bored_mm, mouth_mm, sections
+from jigs.cards import foot_mm
 from jigs.grain import GRAIN_DEG
 from jigs.legs import Leg
 from jigs.quantities import format_angle
@@ -30,6 +31,10 @@ CENTRE_RUN_MM, SIGHTLINE_RUN_MM = 8.0, 16.0
 SIGHTLINE_BACK_MM = 75.0
 # A spindle stands among its like, so that a card stands there across its neighbours' lines; the line is only begun.
 SPINDLE_BACK_MM = 30.0
+# How long the beginnings of the across and fore-and-aft lines are.
+TICK_MM = 7.0
+# A block of words further than this from its mortise is led to it, up to so far from the centre.
+LEADER_FROM_MM, LEADER_SHORT_MM = 26.0, 15.0
 # Chords of the outline used to find room for lettering.
 _ROOM_TOLERANCE_MM = 0.5
 # No more proof lengths than a maker will measure.
@@ -74,14 +79,15 @@ def template(assembly: Assembly, face: Face) -> Piece:
     lines = gather(_lines(assembly, face, outline))
     room = _room(outline, lines, [(seen.point(leg.on_face(face)), leg) for leg in assembly.bored])
     words = gather(_words(assembly, face, room))
-    points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in assembly.bored)
+    shown = (leg for leg in assembly.bored if in_full(assembly, leg, face) or sections(leg, face))
+    points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in shown)
     title = f"Seat template, {face}"
-    notice = f"{face.upper()} · front edge toward you" + _sides(face)
+    notice = f"{face.upper()} · with FRONT toward you {_sides(face)}"
     return Piece(f"template {face}", "template", title, lines + words, "tile", notice, points)
 
 
 def _sides(face: Face) -> str:
-    return " · legs named left lie to your RIGHT" if face == "underside" else " · left is left"
+    return "legs named left lie to your RIGHT" if face == "underside" else "legs named left lie to your left"
 
 
 def _lines(assembly: Assembly, face: Face, outline: Curve) -> Iterator[Drawing | Primitive]:
@@ -101,16 +107,27 @@ def _leg_lines(assembly: Assembly, leg: Leg, face: Face, seen: Affine) -> Iterat
     centre = seen.point(leg.on_face(face))
     bearing = seen_bearing(leg, face)
     if not in_full(assembly, leg, face):
-        yield from cross(centre, 2.0, Role.SET_OUT, bearing).items if sections(leg, face) else ()
+        if sections(leg, face):
+            yield cross(centre, 3.0, Role.SET_OUT, bearing)
+            yield circle(centre, 1.5, Role.SET_OUT)
         return
     if sections(leg, other_face(face)):
         yield cross(seen.point(leg.on_face(other_face(face))), 2.0, Role.HIDDEN, bearing)
     reach = leg.mortise.bit / 2 + 4.0
     yield cross(centre, reach, Role.SET_OUT, bearing)
     yield circle(centre, 1.5, Role.SET_OUT)
+    if leg.drilled == face and leg.kind != "spindle":
+        yield from _ticks(centre, reach)
     if leg.drill.leans:
         yield line(along(centre, bearing, -_back_mm(assembly, leg, face)), centre, Role.SET_OUT)
         yield arrow(centre, along(centre, bearing, _edge_mm(assembly, leg, face) + SIGHTLINE_RUN_MM), 7.0, Role.SET_OUT)
+
+
+def _ticks(centre: Point, reach_mm: float) -> Iterator[Primitive]:
+    """Beginnings of the across and the fore-and-aft line through a centre, for the splay and the rake card."""
+    for quarter in range(4):
+        start, end = (along(centre, quarter * 90.0, reach_mm + further) for further in (2.0, 2.0 + TICK_MM))
+        yield line(start, end, Role.CENTRE)
 
 
 def in_full(assembly: Assembly, leg: Leg, face: Face) -> bool:
@@ -140,7 +157,10 @@ def _edge_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
 
 
 def _back_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
-    most = SIGHTLINE_BACK_MM if leg.kind != "spindle" else SPINDLE_BACK_MM
+    """How far the sightline runs back: a card's foot and the bit, or to the seat's edge."""
+    shank = leg.drill.resultant_deg if leg.leans_with_bit else -leg.drill.resultant_deg
+    card = foot_mm(shank) + leg.mortise.bit / 2
+    most = max(SIGHTLINE_BACK_MM, card + 4.0) if leg.kind != "spindle" else SPINDLE_BACK_MM
     return min(most, -edge_distances_mm(assembly, leg, face)[0])
 
 
@@ -159,7 +179,9 @@ def _words(assembly: Assembly, face: Face, room: Room) -> Iterator[Drawing]:
     for leg in assembly.bored:
         words = _leg_words(assembly, leg, face)
         if words:
-            yield _first_fit(room, words, face_map(face).point(leg.on_face(face)))
+            centre = face_map(face).point(leg.on_face(face))
+            block, box = _placed(room, words, centre)
+            yield block + _leader(box, centre)
     yield _first_fit(room, _title_words(assembly, face), (0.0, bounds.y0 + 0.62 * bounds.height))
     if len(assembly.legs) > 1:
         yield _first_fit(room, _proof_words(assembly, face), (0.0, bounds.y0 + 0.4 * bounds.height))
@@ -176,12 +198,27 @@ def _front(bounds: Box, room: Room) -> Drawing:
 
 
 def _first_fit(room: Room, sizes: tuple[Lettered, ...], wanted: Point) -> Drawing:
-    """The first wording that finds room, else the last one where it is least crowded."""
+    return _placed(room, sizes, wanted)[0]
+
+
+def _placed(room: Room, sizes: tuple[Lettered, ...], wanted: Point) -> tuple[Drawing, Box]:
+    """The first wording that finds room, else the last one where it is least crowded; and the patch that it takes."""
     for words in sizes:
         place = room.find(words.width_mm + 2.0, words.height_mm + 1.0, wanted)
         if place:
-            return words.set_in(place)
-    return sizes[-1].set_in(room.squeeze(sizes[-1].width_mm, sizes[-1].height_mm, wanted))
+            return words.set_in(place), place
+    place = room.squeeze(sizes[-1].width_mm, sizes[-1].height_mm, wanted)
+    return sizes[-1].set_in(place), place
+
+
+def _leader(box: Box, centre: Point) -> Drawing:
+    """A line from a block of words to its mortise, where the block is not plainly beside it."""
+    near = (min(max(centre[0], box.x0), box.x1), min(max(centre[1], box.y0), box.y1))
+    apart = math.dist(near, centre)
+    if apart <= LEADER_FROM_MM:
+        return Drawing()
+    end = along(centre, bearing_deg((near[0] - centre[0], near[1] - centre[1])), LEADER_SHORT_MM)
+    return Drawing((line(near, end, Role.FURNITURE),))
 
 
 def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Lettered, ...]:
@@ -281,13 +318,10 @@ def _grain(assembly: Assembly, face: Face, room: Room) -> Drawing:
         return Drawing()
     grain_deg = GRAIN_DEG[grain] if isinstance(grain, str) else grain
     bounds = assembly.blank.bounds
-    upright = abs(grain_deg) < 45.0
-    width, height = (14.0, 50.0) if upright else (50.0, 14.0)
-    place = room.find(width, height, (bounds.x0 + 0.25 * bounds.width, bounds.y0 + 0.5 * bounds.height))
-    if place is None:
-        return Drawing()
-    middle = place.centre
     direction = face_map(face).vector(along((0.0, 0.0), 90.0 - grain_deg, 22.0))
+    width, height = (max(2 * abs(reach) + 6.0, 14.0) for reach in direction)
+    wanted = (bounds.x0 + 0.25 * bounds.width, bounds.y0 + 0.5 * bounds.height)
+    middle = (room.find(width, height, wanted) or room.squeeze(width, height, wanted)).centre
     ends = [(middle[0] + k * direction[0], middle[1] + k * direction[1]) for k in (1, -1)]
     both = arrow(middle, ends[0], 4.0, Role.NOTE) + arrow(middle, ends[1], 4.0, Role.NOTE)
     return both + Drawing((Text((middle[0], middle[1] - 1.2), "grain", 2.5, align="centre", over=True),))

@@ -188,3 +188,11 @@ def test_every_demo_can_be_built(name):
 
 def test_the_faces_are_each_others_other():
     assert (other_face("top"), other_face("underside")) == ("underside", "top")
+
+
+def test_a_blind_mortise_that_breaks_out_is_refused_with_the_depth_that_would_do():
+    deep = {**LEG, "mirror": False, "splay": 0, "rake": 0, "mortise": {"bit": 25, "depth": 50}}
+    assert refused([deep]) == [
+        "legs[0].mortise.depth: front's mortise breaks out at the top by 5 mm; "
+        "bore less than 45 mm deep, or leave depth out to bore through"
+    ]

@@ -84,16 +84,18 @@ def test_a_mortise_centre_of_the_report_is_a_crossing_of_lines_in_the_file(demo:
     """Each named point is pricked at the middle of the small circle drawn round it."""
     document, data, told = made(demo)
     points = {piece["piece"]: piece["points"] for piece in told["pieces"]}
-    found = 0
+    found: set[tuple[str, str]] = set()
     for seen, page in zip(reading.read_pages(data), told["pages"], strict=True):
         circles = cKDTree(reading.circles(seen))
         for placement in page["placements"]:
-            for point in points[placement["piece"]].values():
+            for name, point in points[placement["piece"]].items():
+                if not Box(*placement["window_mm"]).holds(tuple(point)):
+                    continue
                 where = mapped(placement["to_page"], np.array([point]))
                 distance, _ = circles.query(where)
                 assert distance[0] <= POINT_TOLERANCE_MM
-                found += 1
-    assert found >= 2 * len(document.pieces[-1].points)
+                found.add((placement["piece"], name))
+    assert found == {(piece.name, name) for piece in document.pieces for name, _ in piece.points}
 
 
 @each_demo
