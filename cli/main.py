@@ -8,6 +8,7 @@ Owns the commands. Libraries are imported where they are used, so that help and 
 from __future__ import annotations
 
 import contextlib
+import gc
 import json
 from collections.abc import Iterator
 from pathlib import Path
@@ -248,5 +249,11 @@ def _unharmed(output: Path) -> Iterator[None]:
         raise Refusal(f"stopped: {output} is as it was") from None
 
 
-if __name__ == "__main__":
+def program() -> None:
+    """The whole program. A run is over before there is anything worth collecting, and what a spec may ask is bounded."""
+    gc.disable()
     main(prog_name=PROGRAM)
+
+
+if __name__ == "__main__":
+    program()

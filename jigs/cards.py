@@ -13,7 +13,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from jigs.assembly import Assembly, Face
 from jigs.legs import Leg
@@ -37,8 +37,7 @@ _TOP_MM = 48.0
 BASE_MM, BLADE_MM = 110.0, 96.0
 
 
-@dataclass(frozen=True)
-class Net:
+class Net(NamedTuple):
     """A card as an object: its panels and folds, flat, in mm (axes in the module's docstring).
 
     `lean_deg` is signed: positive where the edge leans to the right as printed.
@@ -77,8 +76,7 @@ def foot_mm(lean_deg: float) -> float:
     return max(FOOT_MM, _TOP_MM - HEIGHT_MM * math.tan(math.radians(lean_deg)))
 
 
-@dataclass(frozen=True)
-class Card:
+class Card(NamedTuple):
     """One card to be made: which angle, for which legs, on which line it stands, and how it leans.
 
     A card always stands with its foot arrow to the right as printed, on the inner side of the mortise, where there is

@@ -12,8 +12,8 @@ line; end +1 back,
 from __future__ import annotations
 
 import math
-from dataclasses import dataclass, replace
-from typing import Literal
+from dataclasses import dataclass
+from typing import Literal, NamedTuple
 
 from jigs.frames import SeatFrame, Vector, dot, further, unit
 from jigs.spec_legs import Mortise
@@ -23,8 +23,7 @@ from layout.geometry import cos_sin
 SQUARE = 1e-12
 
 
-@dataclass(frozen=True, slots=True)
-class Lean:
+class Lean(NamedTuple):
     """How an axis leans from the line square to a plane; all in degrees.
 
     `sightline_deg` runs from the fore-and-aft line toward the leg's own side, -180 to 180; `bearing_deg` is the
@@ -156,11 +155,10 @@ def on_local_face(toward_foot: Vector, fall_deg: float, fall_bearing_deg: float,
         return lean
     shown = tilted * math.cos(fall)
     bearing = _degrees(math.atan2(shown * s + across * c, shown * c - across * s)) % 360.0 % 360.0
-    return replace(lean, bearing_deg=bearing)
+    return lean._replace(bearing_deg=bearing)
 
 
-@dataclass(frozen=True, slots=True)
-class Axis:
+class Axis(NamedTuple):
     """What fixes a leg's axis: the mortise's centre on the drilled face and the direction to the foot in the floor
     frame.
     """
@@ -171,8 +169,7 @@ class Axis:
     end: int
 
 
-@dataclass(frozen=True, slots=True)
-class AxisRun:
+class AxisRun(NamedTuple):
     """An axis followed through the seat to the floor, in the terms of `Leg`."""
 
     floor: Lean

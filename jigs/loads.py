@@ -24,7 +24,7 @@ if TYPE_CHECKING:
 # Where no wood is said: a light one for furniture, so that the sums err toward tipping (practice).
 DEFAULT_DENSITY_KG_M3 = 500.0
 # Chords stand this near to the seat's outline where loads are set on it: it falls short of the true edge by no more.
-OUTLINE_TOLERANCE_MM = 0.05
+OUTLINE_TOLERANCE_MM = 0.25
 # A piece needs so many feet to stand by itself.
 LEAST_FEET = 3
 

@@ -6,8 +6,8 @@ Owns the wording's form and the escaping of a stranger's text. Imports nothing o
 from __future__ import annotations
 
 import unicodedata
-from dataclasses import dataclass
 from datetime import date, time
+from typing import NamedTuple
 
 LONGEST_GIVEN = 60
 _LONGEST_WHERE = 100
@@ -85,8 +85,7 @@ def shown(value: object) -> str:
     return safe(_shown(value, _LEVELS_SHOWN), LONGEST_GIVEN)
 
 
-@dataclass(frozen=True)
-class Problem:
+class Problem(NamedTuple):
     """One thing that makes a spec impossible: its place, what was given, the rule, and what would do.
 
     `where` is a path in the file such as `legs[1].splay`, or empty for the whole file; `rule` reads on from `given`.
@@ -116,8 +115,7 @@ class SpecError(Exception):
         return "\n".join(f"{safe(self.source)}: {problem.text()}" for problem in self.problems)
 
 
-@dataclass(frozen=True)
-class Caution:
+class Caution(NamedTuple):
     """Something merely unwise: drawn all the same, and said on the sheet and the command line.
 
     `code` is one fixed word for other programs, `where` a path in the file, `text` a sentence for the maker.

@@ -216,7 +216,7 @@ class Blank:
         if outside.is_empty:
             return float(edge.distance(ring))
         # Points in between, lest a narrow notch fall between two corners of the ring.
-        dense = shapely.segmentize(outside, max(along_mm, across_mm) / 100)
+        dense = shapely.segmentize(outside, max(along_mm, across_mm) / 25)
         spots = shapely.points(shapely.get_coordinates(dense))
         return -float(shapely.distance(edge, spots).max())
 

@@ -35,7 +35,7 @@ ON_CENTRE_LINE_MM = 1e-6
 # Two ways of writing a round seat's diameter agree when they are this close.
 SAME_DIAMETER_MM = 0.01
 
-Name = Annotated[str, BeforeValidator(values.name_text)]
+Name = Annotated[str, values.Reads(lambda value, _info: values.name_text(value))]
 SeatSize = Annotated[float, values.length(SEAT_SIZE_MM)]
 Within = Annotated[float, values.length((0.0, SEAT_SIZE_MM[1]))]
 Coordinate = Annotated[float, values.length(COORDINATE_MM)]

@@ -9,9 +9,8 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass
 from functools import lru_cache
-from typing import Any
+from typing import Any, NamedTuple
 
 from jigs.quantities import Units, format_length
 from jigs.wood import frustum_centroid, frustum_mm3, slab_mm3, weight_kg
@@ -45,8 +44,7 @@ PLACES: tuple[tuple[str, Spot], ...] = (
 )
 
 
-@dataclass(frozen=True, slots=True)
-class Part:
+class Part(NamedTuple):
     """Something that weighs: its mass in kg and where its centre of gravity is in plan."""
 
     mass_kg: float
@@ -100,8 +98,7 @@ def foot_contacts(centre_mm: Spot, along_mm: float, across_mm: float, bearing_de
     return [(centre_mm[0] + u * c - v * s, centre_mm[1] + u * s + v * c) for u, v in local]
 
 
-@dataclass(frozen=True, slots=True)
-class Edge:
+class Edge(NamedTuple):
     """A side of the support polygon: a point on it and the unit direction square to it, away from the piece."""
 
     through: Spot
@@ -192,8 +189,7 @@ def _tipping_about(edge: Edge, weight_n: float, centre: Spot, point: Spot) -> fl
     return weight_n * edge.inside_mm(centre) / outside if outside > ON_EDGE_MM else math.inf
 
 
-@dataclass(frozen=True, slots=True)
-class PublishedCase:
+class PublishedCase(NamedTuple):
     """The load case as published at its worst point and over its worst edge.
 
     `margin_nm` is what the weight holds by less what the loads tip by, about that edge; positive, it stays down. The
@@ -221,12 +217,13 @@ def published_case(
     edges = support_edges(feet)
     if not edges:
         raise ValueError("the feet enclose no area")
+    loaded = _loaded(outline, PUBLISHED_FROM_EDGE_MM)
     cases = []
-    for point in _loaded(outline, PUBLISHED_FROM_EDGE_MM):
-        for edge in edges:
-            holds = weight_n * edge.inside_mm(centre) + PUBLISHED_DOWN_N * edge.inside_mm(point)
-            margin = (holds - PUBLISHED_OUTWARD_N * seat_height_mm) / 1000
-            cases.append(PublishedCase(margin, point, edge.outward))
+    for edge in edges:
+        worst = min(loaded, key=edge.inside_mm)
+        holds = weight_n * edge.inside_mm(centre) + PUBLISHED_DOWN_N * edge.inside_mm(worst)
+        margin = (holds - PUBLISHED_OUTWARD_N * seat_height_mm) / 1000
+        cases.append(PublishedCase(margin, worst, edge.outward))
     return min(cases, key=lambda case: case.margin_nm)
 
 
@@ -242,8 +239,7 @@ def _loaded(outline: Sequence[Spot], from_edge_mm: float) -> list[Spot]:
     return [(float(x), float(y)) for x, y in shapely.get_coordinates(within)]
 
 
-@dataclass(frozen=True, slots=True)
-class EdgeLoad:
+class EdgeLoad(NamedTuple):
     """The load that tips the piece at one place of the seat; None where no load there can."""
 
     at: str
@@ -251,8 +247,7 @@ class EdgeLoad:
     load_n: float | None
 
 
-@dataclass(frozen=True, slots=True)
-class Stability:
+class Stability(NamedTuple):
     """What the static sums say. `falls` says why a piece does not stand by itself; its loads are then 0."""
 
     falls: str | None

@@ -8,7 +8,7 @@ Imports `assembly`, `template`'s wording and layout's ground.
 from __future__ import annotations
 
 from collections.abc import Iterator
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from jigs.assembly import Assembly
 from jigs.legs import Leg
@@ -26,8 +26,7 @@ WIDTH_MM, RUN_MM = 32.0, 22.0
 SAME_MM, SAME_DEG = 0.02, 0.01
 
 
-@dataclass(frozen=True)
-class Strip:
+class Strip(NamedTuple):
     """One strip: distances along the sightline from the mortise's centre to the seat's edges, and whose it is."""
 
     legs: tuple[Leg, ...]

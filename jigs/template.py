@@ -8,7 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from jigs.assembly import Assembly, Face, other_face
 from jigs.bores import bored_mm, mouth_mm, sections
@@ -41,8 +41,7 @@ _ROOM_TOLERANCE_MM = 0.5
 MOST_PROOFS = 8
 
 
-@dataclass(frozen=True)
-class Lettered:
+class Lettered(NamedTuple):
     """A block of lines to be set where there is room: words, capital height, bold."""
 
     lines: tuple[tuple[str, float, bool], ...]

@@ -5,16 +5,14 @@ Page coordinates are mm from the page's lower left corner. Imports `drawing`, `g
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from layout.drawing import Drawing
 from layout.geometry import Affine, Box, Point
 from layout.piece import Piece
 
 
-@dataclass(frozen=True)
-class Placement:
+class Placement(NamedTuple):
     """A part of a piece on a page: `to_page` maps the piece's mm to the page's, `window` is the part that shows."""
 
     piece: Piece
@@ -22,8 +20,7 @@ class Placement:
     window: Box
 
 
-@dataclass(frozen=True)
-class Mark:
+class Mark(NamedTuple):
     """A registration mark, which stands at the same place of the drawing on every page that shows it."""
 
     id: str
@@ -32,8 +29,7 @@ class Mark:
     drawing_mm: Point
 
 
-@dataclass(frozen=True)
-class Bar:
+class Bar(NamedTuple):
     """A length that proves the print's scale, between two points on the page."""
 
     from_mm: Point
@@ -41,8 +37,7 @@ class Bar:
     nominal_mm: float
 
 
-@dataclass(frozen=True)
-class Page:
+class Page(NamedTuple):
     """One page. `label` is its name among the pages ("template B2"); `tile` is None where nothing is tiled."""
 
     number: int
@@ -58,8 +53,7 @@ class Page:
     stock: Literal["paper", "card"]
 
 
-@dataclass(frozen=True)
-class Document:
+class Document(NamedTuple):
     """All pages of one file, in order."""
 
     title: str

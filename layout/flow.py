@@ -7,23 +7,21 @@ Places are mm in a window whose lower left corner is the origin; y up.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from layout.geometry import Box
 
 GAP_MM = 6.0
 
 
-@dataclass(frozen=True)
-class Block:
+class Block(NamedTuple):
     """A block's size."""
 
     width_mm: float
     height_mm: float
 
 
-@dataclass(frozen=True)
-class BlockPlace:
+class BlockPlace(NamedTuple):
     """Where the lower left corner of a block lies; pages count from 0."""
 
     page: int

@@ -8,6 +8,7 @@ from __future__ import annotations
 
 from collections.abc import Iterator
 from dataclasses import dataclass
+from typing import NamedTuple
 
 from layout.document import Bar
 from layout.drawing import Align, Drawing, Fill, Primitive, Role, Text, gather
@@ -32,8 +33,7 @@ _BAR_Y_MM, _BAR_WORDS_Y_MM, _TITLE_Y_MM, _NOTICE_Y_MM, _TALL_Y_MM = 0.4, 3.3, 8.
 _NAME_Y_MM, _MAP_Y_MM = 2.6, 1.0
 
 
-@dataclass(frozen=True)
-class TilePlace:
+class TilePlace(NamedTuple):
     """A tile among its neighbours: its name, the others' names by side, and where all kept tiles lie."""
 
     name: str

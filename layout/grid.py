@@ -13,7 +13,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Sequence
-from dataclasses import dataclass
 from typing import NamedTuple, TypeVar
 
 import numpy as np
@@ -52,8 +51,7 @@ _MOST_TRIES = 3
 Kind = TypeVar("Kind", np.float64, np.int64)
 
 
-@dataclass(frozen=True)
-class GridRequest:
+class GridRequest(NamedTuple):
     """What is to be laid over pages: polylines (n, 2) in mm that stand for all ink, and what seams should avoid."""
 
     ink: tuple[Floats, ...]
@@ -62,8 +60,7 @@ class GridRequest:
     overlap_mm: float
 
 
-@dataclass(frozen=True)
-class GridChoice:
+class GridChoice(NamedTuple):
     """The window size chosen and (column, row, window) of each page kept; column 0 is leftmost, row 0 the top."""
 
     candidate: int

@@ -7,7 +7,7 @@ lengths of dash and gap in units d: 24 d a long dash, 12 d a dash, 3 d a gap, 0.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
+from typing import NamedTuple
 
 from layout.drawing import Role
 
@@ -25,8 +25,7 @@ _LONG_DASHED_DOTTED = (_LONG_DASH, _GAP, _DOT, _GAP)
 _LONG_DASHED_DOUBLE_DOTTED = (_LONG_DASH, _GAP, _DOT, _GAP, _DOT, _GAP)
 
 
-@dataclass(frozen=True, slots=True)
-class Ink:
+class Ink(NamedTuple):
     """A line type: its width, its grey (0 black, 1 white), and dash, gap, dash, gap ... in mm; none is continuous."""
 
     width_mm: float

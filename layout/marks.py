@@ -11,8 +11,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterable, Iterator, Sequence
-from dataclasses import dataclass
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from layout.document import Mark
 from layout.drawing import Align, Drawing, Primitive, Role, Text, gather
@@ -38,8 +37,7 @@ _DASH_MM, _DASH_GAP_MM, _DASH_CLEAR_MM = 5.0, 3.0, 1.0
 Kind = Literal["side", "stack", "corner"]
 
 
-@dataclass(frozen=True)
-class Joint:
+class Joint(NamedTuple):
     """Two tiles that share a strip, the earlier first: side by side, one above the other, or corner to corner."""
 
     first: Tile
@@ -58,8 +56,7 @@ class Joint:
         return (x, along_mm) if self.axis else (along_mm, y)
 
 
-@dataclass(frozen=True)
-class SeamMark:
+class SeamMark(NamedTuple):
     """One mark: its id and its place, laid mm."""
 
     id: str
@@ -181,8 +178,7 @@ def _inward(mark: SeamMark, tile: Tile) -> Point:
     return (1.0 if x > mark.at[0] else -1.0, 1.0 if y > mark.at[1] else -1.0)
 
 
-@dataclass(frozen=True)
-class _Edge:
+class _Edge(NamedTuple):
     """A line across a page, on a seam or on the window's edge, laid mm, and which side of it its words stand on."""
 
     start: Point

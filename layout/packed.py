@@ -7,8 +7,8 @@ and `tiling`'s tolerance.
 from __future__ import annotations
 
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, field
 from itertools import pairwise
+from typing import NamedTuple
 
 from layout.document import Mark, Placement
 from layout.drawing import Drawing, Role, Text, gather
@@ -32,15 +32,14 @@ _APART_MM, _BELOW_MM, _ABOVE_MM = 12.0, REACH_MM + 1.0, 8.0
 _LABEL_MM, _LABEL_HEIGHT_MM = 2.5, 5.0
 
 
-@dataclass(frozen=True)
-class Part:
+class Part(NamedTuple):
     """A piece, or one length of a strip: what it shows, its marks in the piece's mm, the line below that names it."""
 
     piece: Piece
     window: Box
     marks: tuple[tuple[str, Point], ...] = ()
     label: str = ""
-    seams: Drawing = field(default_factory=Drawing)
+    seams: Drawing = Drawing()
 
     @property
     def size_mm(self) -> tuple[float, float]:
@@ -52,8 +51,7 @@ class Part:
 Parts = tuple[Part, ...]
 
 
-@dataclass(frozen=True)
-class PackedPage:
+class PackedPage(NamedTuple):
     """One page of parts, in page coordinates."""
 
     size_mm: tuple[float, float]

@@ -9,15 +9,13 @@ from __future__ import annotations
 
 import math
 from collections.abc import Callable, Iterable, Iterator, Sequence
-from dataclasses import dataclass
 from typing import NamedTuple
 
 # Rounding may make a piece that fits exactly seem larger than its place by no more than this.
 FIT_TOLERANCE_MM = 1e-9
 
 
-@dataclass(frozen=True)
-class Item:
+class Item(NamedTuple):
     """A rectangle to be placed; the key is the caller's."""
 
     key: int
@@ -25,8 +23,7 @@ class Item:
     height_mm: float
 
 
-@dataclass(frozen=True)
-class Spot:
+class Spot(NamedTuple):
     """Where an item goes: the lower left corner of its box in a page's window; `turned` by a quarter turn."""
 
     key: int

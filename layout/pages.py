@@ -7,9 +7,8 @@ from __future__ import annotations
 
 from collections import Counter
 from collections.abc import Iterator, Sequence
-from dataclasses import dataclass, field
 from itertools import groupby
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from layout.document import Bar, Document, Mark, Page, Placement
 from layout.drawing import Drawing
@@ -34,8 +33,7 @@ MAP_SHEET, MAP_NAME = "setting-out", "tile map"
 Boxed = tuple[Piece, Box]
 
 
-@dataclass(frozen=True)
-class _Draft:
+class _Draft(NamedTuple):
     """A page before it is numbered. `stem` begins its label; `tile` is None where nothing is tiled."""
 
     sheet: str
@@ -45,7 +43,7 @@ class _Draft:
     size_mm: tuple[float, float]
     placements: tuple[Placement, ...]
     stock: Literal["paper", "card"]
-    furniture: Drawing = field(default_factory=Drawing)
+    furniture: Drawing = Drawing()
     marks: tuple[Mark, ...] = ()
     bars: tuple[Bar, ...] = ()
     tile: TilePlace | None = None

@@ -6,8 +6,7 @@ Imports `drawing` and `geometry` only.
 
 from __future__ import annotations
 
-from dataclasses import dataclass
-from typing import Literal
+from typing import Literal, NamedTuple
 
 from layout.drawing import Drawing
 from layout.geometry import Point
@@ -18,8 +17,7 @@ from layout.geometry import Point
 Handling = Literal["tile", "pack", "strip", "flow"]
 
 
-@dataclass(frozen=True)
-class Piece:
+class Piece(NamedTuple):
     """One drawing in its own millimetres.
 
     `sheet` groups the pieces of one kind of page ("template"), `title` is what the page's foot says it is and `notice`

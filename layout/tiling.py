@@ -11,6 +11,7 @@ from collections.abc import Sequence
 from dataclasses import dataclass
 from functools import cached_property
 from itertools import pairwise, product
+from typing import NamedTuple
 
 import numpy as np
 
@@ -79,8 +80,7 @@ def _clipped_span(p: Point, q: Point, box: Box, axis: int) -> list[Span]:
     return [(ends[0], ends[1])]
 
 
-@dataclass(frozen=True)
-class Tile:
+class Tile(NamedTuple):
     """One page of a piece; `name` is None where it is the only one."""
 
     name: str | None

@@ -4,7 +4,6 @@ from __future__ import annotations
 
 import math
 from collections import defaultdict
-from dataclasses import replace
 from functools import cache
 from pathlib import Path
 from typing import Any, NamedTuple
@@ -156,7 +155,7 @@ def test_tiles_put_back_together_are_the_whole_drawing(demo: Path, face: str) ->
     document, _, _ = made(demo)
     name = f"template {face}"
     tiles = [page for page in document.pages if any(p.piece.name == name for p in page.placements)]
-    bare = tuple(replace(page, furniture=Drawing(), marks=(), bars=()) for page in tiles)
+    bare = tuple(page._replace(furniture=Drawing(), marks=(), bars=()) for page in tiles)
     whole_page = _whole(tiles[0].placements[0])
     box = whole_page.placements[0].window
     turn = tiles[0].placements[0].to_page
