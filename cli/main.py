@@ -18,7 +18,7 @@ import click
 
 from cli import VERSION
 from cli.options import complete_paper, complete_sheets, length_mm, refuse_shared, sheets
-from cli.terminal import Refusal, prepare_streams, remark, result
+from cli.terminal import Refusal, leave, prepare_streams, remark, result
 
 if TYPE_CHECKING:
     from jigs.assembly import Assembly, Face
@@ -250,9 +250,15 @@ def _unharmed(output: Path) -> Iterator[None]:
 
 
 def program() -> None:
-    """The whole program. A run is over before there is anything worth collecting, and what a spec may ask is bounded."""
+    """The whole program. A run is over before there is anything worth collecting, and what a spec may ask is bounded.
+
+    What it has written is closed by then, so it leaves without taking down what it has loaded, piece by piece.
+    """
     gc.disable()
-    main(prog_name=PROGRAM)
+    try:
+        main(prog_name=PROGRAM)
+    except SystemExit as end:
+        leave(end.code)
 
 
 if __name__ == "__main__":

@@ -59,3 +59,19 @@ def _drop(stream: IO[Any]) -> None:
         nowhere = os.open(os.devnull, os.O_WRONLY)
         os.dup2(nowhere, stream.fileno())
         os.close(nowhere)
+
+
+def leave(code: object) -> None:
+    """Ends the process at once, with all that was said flushed; as `sys.exit` would, but for the taking down.
+
+    A code that is neither a number nor None is said and counts as 1. Where the reader of our output has gone, nothing
+    more can be said, and Python's own way out keeps quiet about it.
+    """
+    if not (code is None or isinstance(code, int)):
+        sys.exit(str(code))
+    try:
+        sys.stdout.flush()
+        sys.stderr.flush()
+    except OSError:
+        sys.exit(code)
+    os._exit(code or 0)
