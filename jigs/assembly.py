@@ -8,6 +8,7 @@ Imports the spec's models, `seats`, `members`, `bores`, `stretchers`; no drawing
 from __future__ import annotations
 
 import math
+import re
 from collections.abc import Iterator
 from dataclasses import dataclass
 from itertools import combinations
@@ -115,8 +116,15 @@ def _stretchers(
     try:
         return place([_asked(table) for table in furniture.stretchers], bars, furniture.units), bars
     except StretcherError as error:
-        problems += [fault.problem() for fault in error.faults]
+        problems += [_as_written(fault.problem(), furniture.stretchers[fault.index]) for fault in error.faults]
         return (), bars
+
+
+def _as_written(problem: Problem, table: StretcherTable) -> Problem:
+    """The problem at the key that the file has: one height says both."""
+    if table.height is None:
+        return problem
+    return problem._replace(where=re.sub(r"\.heights\[\d\]$", ".height", problem.where))
 
 
 def _asked(table: StretcherTable) -> StretcherSpec:
@@ -152,8 +160,8 @@ def as_bar(leg: Leg, frame: SeatFrame, thickness_mm: float) -> Bar:
 
 
 def _off_the_blank(assembly: Assembly) -> Iterator[Problem]:
-    """Entries that are not wholly on the blank, and through bores whose axis leaves it through the side."""
-    for leg in assembly.legs:
+    """Entries that are not wholly on the blank, and legs' through bores whose axis leaves it through the side."""
+    for leg in assembly.bored:
         margins = [
             assembly.blank.ellipse_margin_mm(s.centre, s.along_mm, s.across_mm, s.bearing_deg)
             for s in sections(leg, leg.drilled)
@@ -162,14 +170,19 @@ def _off_the_blank(assembly: Assembly) -> Iterator[Problem]:
         if entry < 0.0:
             given = f"{leg.name}'s mortise on the {leg.drilled}"
             rule = f"leaves the blank by {assembly.length(-entry)}"
-            yield Problem(f"{leg.place}.at", given, rule, "move it further in, or make the seat larger")
+            yield Problem(_placed_by(leg), given, rule, "move it further in, or make the seat larger")
             continue
         exit_face = other_face(leg.drilled)
-        if sections(leg, exit_face) and not assembly.blank.holds(leg.on_face(exit_face)):
+        # A post that does so can still be bored and wedged in; `checks` tells of it.
+        if leg.kind == "leg" and sections(leg, exit_face) and not assembly.blank.holds(leg.on_face(exit_face)):
             rule = f"comes out through the seat's side before it reaches the {exit_face}"
-            yield Problem(
-                f"{leg.place}.at", f"{leg.name}'s bore", rule, "move the mortise further in or lessen the lean"
-            )
+            yield Problem(_placed_by(leg), f"{leg.name}'s bore", rule, "move the mortise further in or lessen the lean")
+
+
+def _placed_by(leg: Leg) -> str:
+    """The key that says where a part stands in the seat."""
+    key = "deck" if leg.kind == "spindle" else "circle" if leg.place.startswith("rings") else "at"
+    return f"{leg.place}.{key}"
 
 
 def _blind_from_top(furniture: Furniture) -> Iterator[Problem]:
@@ -199,4 +212,4 @@ def _bores_that_meet(assembly: Assembly) -> Iterator[Problem]:
         web = web_mm(one, other, assembly.thickness_mm)
         if web < 0.0:
             rule = f"meets that of {one.name} inside the seat by {assembly.length(-web)}"
-            yield Problem(f"{other.place}.at", f"{other.name}'s bore", rule, "move them apart or use a smaller bit")
+            yield Problem(_placed_by(other), f"{other.name}'s bore", rule, "move them apart or use a smaller bit")

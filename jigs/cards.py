@@ -160,7 +160,12 @@ def card_pieces(assembly: Assembly) -> tuple[Piece, ...]:
         )
         for group in _shared(parts, [leg.drill.resultant_deg for leg in parts], within)
     ]
-    flat = [_bevel_piece(assembly, number, angle, legs) for number, (angle, _, legs) in enumerate(groups, 1)]
+    read = [format_angle(90.0 - angle) for angle, _, _ in groups]
+    finer = [2 if read.count(words) > 1 else 1 for words in read]
+    flat = [
+        _bevel_piece(assembly, number, angle, legs, decimals)
+        for number, ((angle, _, legs), decimals) in enumerate(zip(groups, finer, strict=True), 1)
+    ]
     return (*standing, *flat)
 
 
@@ -233,7 +238,7 @@ def _tab_words(shape: Net) -> Drawing:
     return Drawing((Text((middle, -9.0), "fold back, tape to the face", 2.5, align="centre"),))
 
 
-def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: list[Leg]) -> Piece:
+def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: list[Leg], decimals: int) -> Piece:
     """A plain angle: the bevel's stock along the base line, its blade along the other."""
     bevel = 90.0 - resultant_deg
     corner = (0.0, 0.0)
@@ -247,8 +252,8 @@ def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: li
             line(corner, blade, Role.SET_OUT),
             Text(along(along(corner, bevel, 30.0), bevel - 90.0, 4.5), "blade along this line", 2.5, angle_deg=bevel),
             Text((BASE_MM, -6.0), "stock of the bevel along this line, which is the face", 2.5, align="right"),
-            Text((50.0, 42.0), f"bevel {format_angle(bevel)}", 7.0, bold=True),
-            Text((50.0, 32.0), f"lean {format_angle(resultant_deg)} from square", 3.5),
+            Text((50.0, 42.0), f"bevel {format_angle(bevel, decimals)}", 7.0, bold=True),
+            Text((50.0, 32.0), f"lean {format_angle(resultant_deg, decimals)} from square", 3.5),
             *(Text((50.0, 24.0 - 5.0 * k), words, 2.5) for k, words in enumerate(wrap(names, 58.0, 2.5))),
             arrow_head(blade, bevel, 4.0, Role.SET_OUT),
         ]

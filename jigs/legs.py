@@ -143,14 +143,14 @@ def on_local_face(toward_foot: Vector, fall_deg: float, fall_bearing_deg: float,
 
     `toward_foot` runs out of the seat, down or up, in the seat frame. Splay, rake and sightline are measured in the
     tilted face, from the seat's own lines turned into it the shortest way; the bearing is that of the lean as seen
-    square to the seat, which is how a template shows it.
+    square to the seat, which is how a template shows it. Raises ValueError for an axis that does not leave that face.
     """
     c, s = cos_sin(fall_bearing_deg)
     fall = math.radians(fall_deg)
     x, y, z = toward_foot
     along, across = x * c + y * s, y * c - x * s
     tilted, out = along * math.cos(fall) - z * math.sin(fall), along * math.sin(fall) + z * math.cos(fall)
-    lean = lean_of((tilted * c - across * s, tilted * s + across * c, -abs(out)), side, end)
+    lean = lean_of((tilted * c - across * s, tilted * s + across * c, -out if z > 0.0 else out), side, end)
     if not lean.leans:
         return lean
     shown = tilted * math.cos(fall)

@@ -21,6 +21,8 @@ from layout.geometry import Point
 
 # A mortise this near to the middle of the seat's depth belongs to neither end.
 ON_MIDDLE_MM = 1e-6
+# Slopes that differ by less are one: the solver's own rounding is a thousandth of it.
+SAME_SLOPES = 1e-10
 
 _Drawn = Callable[[Place, str], Leg]
 
@@ -65,8 +67,12 @@ class Members:
         if spec.equal_from is not None and neighbours is None:
             return
 
+        drawn: list[Direction] = []
+
         def draw(where: Place, name: str) -> Leg:
             direction = leg_direction(spec, where, self.seating, neighbours)
+            direction = _as_twin_of(drawn[0], direction) if drawn else direction
+            drawn.append(direction)
             self._note(place, direction, name, spec)
             return self._leg(spec, place, name, where, direction)
 
@@ -170,7 +176,7 @@ class Members:
         yield from self._twins(place, spec, draw)
 
     def _row(self, place: str, spec: SpindleSpec) -> Iterator[Leg]:
-        from jigs.rows import row_places  # noqa: PLC0415 - few seats have spindles
+        from jigs.rows import MOST_LEAN_DEG, rises, row_places  # noqa: PLC0415 - few seats have spindles
 
         frame = self.seating.frame
         try:
@@ -182,7 +188,13 @@ class Members:
         for number, (at, upper) in enumerate(zip(deck, crest, strict=True), 1):
             foot = frame.to_floor((*at, 0.0))
             rise = top - foot[2]
-            direction = ((upper[0] - foot[0]) / rise, (upper[1] - foot[1]) / rise, -1.0)
+            reach = (upper[0] - foot[0], upper[1] - foot[1], rise)
+            if rise <= 0.0 or not rises(frame.turn_to_seat(reach)):
+                rule = f"would lean more than {MOST_LEAN_DEG:g} degrees from square to the seat"
+                cure = "raise the crest, or bring it over the deck"
+                self.problems.append(Problem(f"{place}.crest", f"{spec.name} {number}", rule, cure))
+                return
+            direction = (reach[0] / rise, reach[1] / rise, -1.0)
             where = Place(at, _side(at[0]), 1 if at[1] >= self.seating.blank.middle_y_mm else -1)
             length = math.dist(foot, (*upper, top))
             axis = Axis(at, direction, where.side, where.end)
@@ -190,6 +202,13 @@ class Members:
             made = _member(place, f"{spec.name} {number}", where, run, spec.mortise, "top", "spindle")
             made = replace(made, foot_z_mm=z)
             yield _filling(made, spec.model_fields_set, spec.diameter, spec.end_diameter, "end_diameter")
+
+
+def _as_twin_of(first: Direction, second: Direction) -> Direction:
+    """The second of two twins' directions; where rounding alone keeps it from mirroring the first, the mirror image."""
+    x, y, z = first.vector
+    image = (-x, y, z)
+    return second._replace(vector=image) if math.dist(second.vector, image) <= SAME_SLOPES else second
 
 
 def _side(x: float) -> int:

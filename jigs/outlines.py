@@ -149,7 +149,11 @@ def _refuse_spikes(corners: Sequence[Point], units: Units) -> None:
 
 
 def rounded_polygon(corners: Sequence[Point], radius_mm: float) -> Curve:
-    """Lines from corner to corner with tangent arcs of the radius between, which must fit; it starts at the first."""
+    """Lines from corner to corner with tangent arcs of the radius between, which must fit; it starts at the first.
+
+    A radius that is no more than a point leaves the corners sharp.
+    """
+    radius_mm = radius_mm if radius_mm > SAME_POINT_MM else 0.0
     around = zip([corners[-1], *corners[:-1]], corners, _turns(corners), strict=True)
     arcs = [_corner_arc(before, corner, turn, radius_mm) for before, corner, turn in around]
     leave = [arc.end if arc else corner for arc, corner in zip(arcs, corners, strict=True)]

@@ -1,14 +1,20 @@
 """Places evenly along a straight or arc line in plan: the deck of a row of spindles, and its crest.
 
-Owns the spacing. Imports `knowns` and `layout.geometry`.
+Owns the spacing, and how flat a spindle may lie. Imports `frames`, `knowns` and `layout.geometry`.
 """
 
 from __future__ import annotations
 
 import math
 
+from jigs.frames import Vector
 from jigs.knowns import CannotSolve
 from layout.geometry import Point
+
+# A spindle leans no more than this from square to the seat, as a leg that is solved for does not.
+MOST_LEAN_DEG = 60.0
+# An arc that bows by less is a straight line.
+STRAIGHT_MM = 1e-9
 
 
 def row_places(width_mm: float, back_mm: float, bow_mm: float, count: int) -> tuple[Point, ...]:
@@ -24,11 +30,17 @@ def row_places(width_mm: float, back_mm: float, bow_mm: float, count: int) -> tu
             f"a bow of {abs(bow_mm):.1f} mm is more than half of the width, {half:.1f} mm", "give a flatter arc"
         )
     shares = [2 * k / (count - 1) - 1 for k in range(count)]
-    if bow_mm == 0.0 or half == 0.0:
+    if abs(bow_mm) < STRAIGHT_MM:
         return tuple((half * share, back_mm) for share in shares)
     radius = (half**2 + bow_mm**2) / (2 * abs(bow_mm))
-    turn = math.asin(min(1.0, half / radius))
+    turn = 2 * math.atan(abs(bow_mm) / half)
     sign = math.copysign(1.0, bow_mm)
     return tuple(
-        (radius * math.sin(turn * share), back_mm - sign * radius * (1 - math.cos(turn * share))) for share in shares
+        (radius * math.sin(turn * share), back_mm - sign * 2 * radius * math.sin(turn * share / 2) ** 2)
+        for share in shares
     )
+
+
+def rises(run: Vector) -> bool:
+    """Whether a spindle with this run, from deck to crest in the seat's frame, leaves the seat and leans no more."""
+    return run[2] > 0.0 and math.hypot(run[0], run[1]) <= math.tan(math.radians(MOST_LEAN_DEG)) * run[2]

@@ -19,9 +19,9 @@ def settings(assembly: Assembly) -> dict[str, Any]:
     return {
         "name": assembly.furniture.name,
         "drill_from": assembly.drilled,
-        "legs": [{**_leg_settings(leg), "cut": _cut(assembly, leg)} for leg in assembly.legs],
-        "posts": [_leg_settings(post) for post in assembly.posts],
-        "spindles": [_leg_settings(spindle) for spindle in assembly.spindles],
+        "legs": [_leg_settings(assembly, leg) for leg in assembly.legs],
+        "posts": [_leg_settings(assembly, post) for post in assembly.posts],
+        "spindles": [_leg_settings(assembly, spindle) for spindle in assembly.spindles],
         "stretchers": [stretcher.data() for stretcher in assembly.stretchers],
         "stability": _stability(assembly),
         "warnings": [{"code": c.code, "where": c.where, "text": c.text} for c in cautions(assembly)],
@@ -40,7 +40,7 @@ def _stability(assembly: Assembly) -> Any:
     return standing(assembly).data()
 
 
-def _leg_settings(leg: Leg) -> dict[str, Any]:
+def _leg_settings(assembly: Assembly, leg: Leg) -> dict[str, Any]:
     return {
         "name": leg.name,
         **_lean(leg.floor),
@@ -51,6 +51,7 @@ def _leg_settings(leg: Leg) -> dict[str, Any]:
         "drilled_from": leg.drilled,
         "axis_mm": leg.axis_mm,
         "in_seat_mm": leg.in_seat_mm,
+        "cut": _cut(assembly, leg),
     }
 
 

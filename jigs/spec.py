@@ -110,7 +110,7 @@ class Furniture(Table):
         cls, value: object, read: Callable[[object], tuple[LegSpec, ...]], info: ValidationInfo
     ) -> tuple[LegSpec, ...]:
         if value is None:
-            if not info.data.get("rings"):
+            if not info.data.get("rings", True):
                 raise missing(("legs",))
             return ()
         return read(value)
@@ -202,9 +202,8 @@ def _names_taken(tree: dict[str, object]) -> list[tuple[Loc, Problem]]:
     owners: dict[str, tuple[Loc, str]] = {}
     found: list[tuple[Loc, Problem]] = []
     for loc, part in _named_parts(tree):
-        names = _names_in(part)
-        for name in names:
-            owner, owned_as = owners.setdefault(name, (loc, "a twin of " if len(names) > 1 else ""))
+        for name, as_one in _names_in(part):
+            owner, owned_as = owners.setdefault(name, (loc, as_one))
             if owner != loc:
                 rule = f"is already the name of {owned_as}{place(owner)}"
                 kind = "leg" if loc[0] == "legs" else "part"
@@ -221,10 +220,16 @@ def _named_parts(tree: dict[str, object]) -> Iterator[tuple[Loc, object]]:
             yield (table, index), part
 
 
-def _names_in(part: object) -> tuple[str, ...]:
+def _names_in(part: object) -> list[tuple[str, str]]:
+    """The names that a table takes, and how a part that has one of them is called; parts of a row are numbered."""
     if not isinstance(part, dict):
-        return ()
+        return []
     try:
-        return twins(values.name_text(part.get("name")), part.get("mirror") is True)
+        name = values.name_text(part.get("name"))
     except ValueError:
-        return ()
+        return []
+    if part.get("mirror") is True:
+        return [(twin, "a twin of ") for twin in twins(name, True)]
+    count = part.get("count")
+    many = min(count, MOST_LEGS) if isinstance(count, int) else 0
+    return [(name, ""), *((f"{name} {number}", "one of ") for number in range(1, many + 1))]

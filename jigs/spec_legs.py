@@ -9,7 +9,7 @@ from __future__ import annotations
 from collections.abc import Callable
 from typing import Annotated, Literal
 
-from pydantic import BeforeValidator, Field, StrictBool, ValidationInfo, field_validator
+from pydantic import Field, StrictBool, ValidationInfo, field_validator
 
 from jigs import spec_values as values
 from jigs.quantities import format_length
@@ -49,8 +49,11 @@ KNOWN_KEYS = (
 )
 START_KEYS = ("picture", "measured", "aim_at")
 
-Pixel = Annotated[tuple[Annotated[float, values.number(PIXELS)], Annotated[float, values.number(PIXELS)]], values.PAIR]
-PixelLine = Annotated[tuple[Pixel, Pixel], BeforeValidator(values.pair)]
+PixelLength = Annotated[float, values.number(PIXELS)]
+Pixel = Annotated[tuple[PixelLength, PixelLength], values.two("a point in pixels", "[x, y], such as [402, 311]")]
+PixelLine = Annotated[tuple[Pixel, Pixel], values.two("a pair of points", "[[x, y], [x, y]] in pixels")]
+TwoNames = Annotated[tuple[Name, Name], values.two("a pair of names", '["front left", "back left"]')]
+Share = Annotated[float, values.number((0.0, 1.0))]
 Resultant = Annotated[float, values.angle(RESULTANT_DEG)]
 
 
@@ -152,7 +155,7 @@ class _Bored(_InMortise):
         if value is None:
             if central:
                 return 0.0
-            if "at" in info.data and not _otherwise_known(info):
+            if "at" in info.data and not cls._otherwise_known(info):
                 raise missing(("legs", "splay"))
             return None
         splay = read(value)
@@ -164,9 +167,15 @@ class _Bored(_InMortise):
     @field_validator("rake", mode="wrap", check_fields=False)
     @classmethod
     def _rake(cls, value: object, read: Callable[[object], float], info: ValidationInfo) -> float | None:
-        if value is None and not _otherwise_known(info):
+        if value is None and not cls._otherwise_known(info):
             raise missing(("legs", "rake"))
         return None if value is None else read(value)
+
+    @classmethod
+    def _otherwise_known(cls, info: ValidationInfo) -> bool:
+        """Whether something besides splay and rake says how the part leans, so that neither need be given."""
+        keys = [key for key in (*KNOWN_KEYS, *START_KEYS) if key in cls.model_fields]
+        return any(_given(info, key) for key in keys)
 
 
 class LegSpec(_Bored):
@@ -183,7 +192,7 @@ class LegSpec(_Bored):
     inside_side: Coordinate | None = None
     inside_end: Coordinate | None = None
     axis: SeatSize | None = None
-    equal_from: Annotated[tuple[Name, Name], values.PAIR] | None = None
+    equal_from: TwoNames | None = None
     picture: Picture | None = None
     measured: Measured | None = None
     aim_at: Triple | None = None
@@ -219,7 +228,7 @@ class RingSpec(_InMortise):
     @field_validator("resultant", mode="wrap")
     @classmethod
     def _one_of_two(cls, value: object, read: Callable[[object], float], info: ValidationInfo) -> float | None:
-        if (value is None) == (info.data.get("feet_circle") is None):
+        if (value is None) != _given(info, "feet_circle"):
             raise refusal("one of resultant and feet_circle is needed, not both", given="")
         return None if value is None else read(value)
 
@@ -277,15 +286,12 @@ class StretcherTable(Table):
     """
 
     name: Name
-    between: Annotated[tuple[Name, Name], values.PAIR]
+    between: TwoNames
     height: SeatSize | None = None
     heights: Annotated[tuple[SeatSize, SeatSize], values.PAIR] | None = None
-    fractions: (
-        Annotated[
-            tuple[Annotated[float, values.number((0.0, 1.0))], Annotated[float, values.number((0.0, 1.0))]], values.PAIR
-        ]
-        | None
-    ) = Field(default=None, validate_default=True)
+    fractions: Annotated[tuple[Share, Share], values.two("a pair of numbers", "[0.5, 0.5]")] | None = Field(
+        default=None, validate_default=True
+    )
     diameter: Diameter
     tenon: Within = 20.0
     tenon_diameter: Diameter | None = None
@@ -293,7 +299,7 @@ class StretcherTable(Table):
     @field_validator("fractions")
     @classmethod
     def _one_way(cls, fractions: tuple[float, float] | None, info: ValidationInfo) -> tuple[float, float] | None:
-        given = [name for name in ("height", "heights") if info.data.get(name) is not None]
+        given = [name for name in ("height", "heights") if _given(info, name)]
         if len(given) + (fractions is not None) != 1:
             raise refusal("one of height, heights and fractions is needed, and only one", given="")
         return fractions
@@ -326,6 +332,6 @@ def twins(name: str, mirror: bool) -> tuple[str, ...]:
     return (f"{name} left", f"{name} right") if mirror else (name,)
 
 
-def _otherwise_known(info: ValidationInfo) -> bool:
-    """Whether something besides splay and rake says how the part leans, so that neither need be given."""
-    return any(info.data.get(key) is not None for key in (*KNOWN_KEYS, *START_KEYS))
+def _given(info: ValidationInfo, key: str) -> bool:
+    """Whether an earlier key of the table is given, even if wrongly: what is wrong with it is said where it stands."""
+    return key not in info.data or info.data[key] is not None

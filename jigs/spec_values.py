@@ -146,6 +146,17 @@ def pair(value: object) -> object:
 PAIR = BeforeValidator(pair)
 
 
+def two(what: str, example: str) -> BeforeValidator:
+    """Reads a list of two, which are called so and written like this."""
+
+    def read(value: object) -> object:
+        if isinstance(value, list | tuple) and len(value) == 2:
+            return value
+        raise refusal(f"is not {what}", f"write {example}")
+
+    return BeforeValidator(read)
+
+
 def triple(value: object) -> object:
     """The value, if it is a list of three; what is in it is read after."""
     if isinstance(value, list | tuple) and len(value) == 3:

@@ -81,7 +81,7 @@ def template(assembly: Assembly, face: Face) -> Piece:
     shown = (leg for leg in assembly.bored if in_full(assembly, leg, face) or sections(leg, face))
     points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in shown)
     title = f"Seat template, {face}"
-    notice = f"{face.upper()} · with FRONT toward you {_sides(face)}"
+    notice = f"{face.upper()} · with FRONT toward you, {_sides(face)}"
     return Piece(f"template {face}", "template", title, lines + words, "tile", notice, points)
 
 

@@ -206,10 +206,14 @@ class Cubic:
         """The point at parameter t."""
         if not 0.0 < t < 1.0:
             return self.start if t <= 0.0 else self.end
+        # Bernstein's form about the start, so that a segment of one point is that point to the last bit.
         s = 1.0 - t
-        a, b, c, d = s * s * s, 3 * s * s * t, 3 * s * t * t, t * t * t
+        b, c, d = 3 * s * s * t, 3 * s * t * t, t * t * t
         (x0, y0), (x1, y1), (x2, y2), (x3, y3) = self.start, self.first, self.second, self.end
-        return (a * x0 + b * x1 + c * x2 + d * x3, a * y0 + b * y1 + c * y2 + d * y3)
+        return (
+            x0 + b * (x1 - x0) + c * (x2 - x0) + d * (x3 - x0),
+            y0 + b * (y1 - y0) + c * (y2 - y0) + d * (y3 - y0),
+        )
 
     def mapped(self, m: Affine) -> Cubic:
         """The segment under an affine map."""

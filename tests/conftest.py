@@ -2,12 +2,23 @@
 
 from __future__ import annotations
 
+import os
 from collections.abc import Callable
 from pathlib import Path
 
 import pytest
+from hypothesis import HealthCheck, settings
 
 from tests.reading import SeenPage, read_pages
+
+# A run by hand looks at new cases; the check of a change looks at the same ones, lest it fail for what it left alone.
+settings.register_profile(
+    "shop",
+    deadline=None,
+    derandomize=bool(os.environ.get("CI")),
+    suppress_health_check=[HealthCheck.too_slow],
+)
+settings.load_profile("shop")
 
 ROOT = Path(__file__).resolve().parent.parent
 

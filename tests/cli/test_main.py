@@ -147,7 +147,9 @@ def test_progress_and_warnings_go_to_standard_error(folder):
 def test_quiet_leaves_only_warnings(folder):
     result = run("make", "stool.toml", "--quiet")
     assert result.stdout == ""
-    assert all(re.fullmatch(r"stool\.toml: [a-z.]+(\[\d\])?: .+ \[[a-z-]+\]", line) for line in result.stderr.splitlines())
+    assert all(
+        re.fullmatch(r"stool\.toml: [a-z.]+(\[\d\])?: .+ \[[a-z-]+\]", line) for line in result.stderr.splitlines()
+    )
     assert (folder / "stool.pdf").exists()
 
 

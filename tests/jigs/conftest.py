@@ -8,16 +8,11 @@ from functools import cache
 from pathlib import Path
 from typing import Any
 
-from hypothesis import HealthCheck, settings
-
 from jigs.assembly import Assembly, assemble
 from jigs.spec import parse_spec, read_spec
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
 from layout.geometry import Curve, flatten
 from layout.operations import text_corners
-
-settings.register_profile("shop", deadline=None, suppress_health_check=[HealthCheck.too_slow])
-settings.load_profile("shop")
 
 ROOT = Path(__file__).resolve().parents[2]
 DEMOS = tuple(sorted(path.stem for path in (ROOT / "demo_specs").glob("*.toml")))
