@@ -69,8 +69,8 @@ def _boring(assembly: Assembly, face: Face) -> str:
         f"as the arrow, its leaning edge at the mortise. The shank leans {way}. Sight the bit against the leaning edge "
         "from the side, and against the sightline from its end. At a drill press, tilt the table by the lean and turn "
         "the seat until the sightline lies square to the table's pivot. Two cards, splay and rake, on the across and "
-        "the fore-and-aft line (the short lines at each centre) do the same. Where a card is longer than the seat there, lay a board flush with "
-        "the face."
+        "the fore-and-aft line (the short lines at each centre) do the same. Where a card is longer than the seat "
+        "there, lay a board flush with the face."
     )
 
 

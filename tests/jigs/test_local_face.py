@@ -35,10 +35,9 @@ def assert_lean(lean, toward_foot, fall_deg, toward_deg, side, end):
     if expected[2] > 1e-4:
         assert (lean.sightline_deg - expected[3] + 180.0) % 360.0 - 180.0 == pytest.approx(0.0, abs=1e-6)
     out = normal * np.sign(foot @ normal)
-    bevel = math.degrees(math.asin(foot @ out))
-    assert lean.bevel_deg == pytest.approx(bevel, abs=1e-6)
     # The lean's line in the tilted face, as seen square to the seat.
     line = foot - (foot @ normal) * normal
+    assert lean.bevel_deg == pytest.approx(math.degrees(math.atan2(foot @ out, np.linalg.norm(line))), abs=1e-6)
     seen = math.degrees(math.atan2(line[1], line[0]))
     if np.hypot(*line[:2]) > 1e-6:
         assert (seen - lean.bearing_deg + 180.0) % 360.0 - 180.0 == pytest.approx(0.0, abs=1e-5)
