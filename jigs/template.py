@@ -8,7 +8,6 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
-from typing import NamedTuple
 
 from jigs.assembly import Assembly, Face, other_face
 from jigs.bores import bored_mm, mouth_mm, sections
@@ -18,12 +17,11 @@ from jigs.legs import Leg
 from jigs.quantities import format_angle
 from jigs.spec import Mortise
 from layout.drawing import Drawing, Primitive, Role, Stroke, Text, gather
-from layout.geometry import Affine, Box, Curve, Point, along, bearing_deg, ellipse_curve, flatten, mapped
+from layout.geometry import Affine, Curve, Point, along, bearing_deg, ellipse_curve, mapped
+from layout.labels import block
 from layout.lettering import text_width_mm
-from layout.operations import polylines
-from layout.piece import Piece
-from layout.room import Room
-from layout.shapes import LINE_PITCH, arrow, circle, cross, line
+from layout.piece import Label, Piece, Wording
+from layout.shapes import arrow, circle, cross, line
 
 # How far the centre line runs out past the seat, and a sightline past its edge, arrow's head included.
 CENTRE_RUN_MM, SIGHTLINE_RUN_MM = 8.0, 16.0
@@ -33,37 +31,12 @@ SIGHTLINE_BACK_MM = 75.0
 SPINDLE_BACK_MM = 30.0
 # How long the beginnings of the across and fore-and-aft lines are.
 TICK_MM = 7.0
-# A block of words further than this from its mortise is led to it, up to so far from the centre.
-LEADER_FROM_MM, LEADER_SHORT_MM = 26.0, 15.0
-# Chords of the outline used to find room for lettering.
-_ROOM_TOLERANCE_MM = 0.5
+# Clear space round the face's name and the proof lengths, so that they are not read as a leg's.
+APART_MM = 6.0
+# Words keep so far from a mortise's centre, and FRONT's middle from the centre line.
+ASIDE_MM, FRONT_ASIDE_MM = 12.0, 23.0
 # No more proof lengths than a maker will measure.
 MOST_PROOFS = 8
-
-
-class Lettered(NamedTuple):
-    """A block of lines to be set where there is room: words, capital height, bold."""
-
-    lines: tuple[tuple[str, float, bool], ...]
-
-    @property
-    def width_mm(self) -> float:
-        """Of the widest line."""
-        return max(text_width_mm(words, height, bold) for words, height, bold in self.lines)
-
-    @property
-    def height_mm(self) -> float:
-        """Of all lines together."""
-        return sum(height * LINE_PITCH for _, height, _ in self.lines)
-
-    def set_in(self, box: Box) -> Drawing:
-        """The lines in a box, centred, from its top down."""
-        x, y = box.centre[0], box.y1
-        drawn = []
-        for words, height, bold in self.lines:
-            y -= height * LINE_PITCH
-            drawn.append(Text((x, y + 0.45 * height), words, height, align="centre", bold=bold, over=True))
-        return Drawing(tuple(drawn))
 
 
 def face_map(face: Face) -> Affine:
@@ -76,13 +49,12 @@ def template(assembly: Assembly, face: Face) -> Piece:
     seen = face_map(face)
     outline = mapped(assembly.blank.curve, seen)
     lines = gather(_lines(assembly, face, outline))
-    room = _room(outline, lines, [(seen.point(leg.on_face(face)), leg) for leg in assembly.bored])
-    words = gather(_words(assembly, face, room))
+    labels = tuple(_labels(assembly, face))
     shown = (leg for leg in assembly.bored if in_full(assembly, leg, face) or sections(leg, face))
     points = tuple((leg.name, seen.point(leg.on_face(face))) for leg in shown)
     title = f"Seat template, {face}"
     notice = f"{face.upper()} · with FRONT toward you, {_sides(face)}"
-    return Piece(f"template {face}", "template", title, lines + words, "tile", notice, points)
+    return Piece(f"template {face}", "template", title, lines, "tile", notice, points, labels=labels)
 
 
 def _sides(face: Face) -> str:
@@ -163,72 +135,38 @@ def _back_mm(assembly: Assembly, leg: Leg, face: Face) -> float:
     return min(most, -edge_distances_mm(assembly, leg, face)[0])
 
 
-def _room(outline: Curve, lines: Drawing, centres: list[tuple[Point, Leg]]) -> Room:
-    room = Room(flatten(outline, _ROOM_TOLERANCE_MM), edge_mm=3.0)
-    for points in polylines(Drawing(lines.items[1:]), _ROOM_TOLERANCE_MM):
-        room.take(points, 2.0)
-    for (x, y), leg in centres:
-        room.take_box(Box(x, y, x, y).grown(12.0 if leg.kind != "spindle" else leg.mortise.bit / 2))
-    return room
-
-
-def _words(assembly: Assembly, face: Face, room: Room) -> Iterator[Drawing]:
+def _labels(assembly: Assembly, face: Face) -> Iterator[Label]:
+    """What the template says, in the order in which it finds its room."""
     bounds = assembly.blank.bounds
-    yield _front(bounds, room)
+    yield Label((_front(),), (FRONT_ASIDE_MM, bounds.y0 + 12.0))
     for leg in assembly.bored:
         words = _leg_words(assembly, leg, face)
         if words:
-            centre = face_map(face).point(leg.on_face(face))
-            block, box = _placed(room, words, centre)
-            yield block + _leader(box, centre)
-    yield _first_fit(room, _title_words(assembly, face), (0.0, bounds.y0 + 0.62 * bounds.height))
+            aside = ASIDE_MM if leg.kind != "spindle" else leg.mortise.bit / 2
+            yield Label(words, face_map(face).point(leg.on_face(face)), aside, led=True)
+    yield Label(_title_words(assembly, face), (0.0, bounds.y0 + 0.62 * bounds.height))
     if len(assembly.legs) > 1:
-        yield _first_fit(room, _proof_words(assembly, face), (0.0, bounds.y0 + 0.4 * bounds.height))
-    yield _grain(assembly, face, room)
+        yield Label(_proof_words(assembly, face), (0.0, bounds.y0 + 0.4 * bounds.height))
+    yield from _grain(assembly, face)
 
 
-def _front(bounds: Box, room: Room) -> Drawing:
+def _front() -> Wording:
     """The word FRONT with its arrow to the front edge."""
     width = text_width_mm("FRONT", 5.0, True) + 10.0
-    place = room.find(width, 11.0, (width / 2 + 6.0, bounds.y0 + 12.0)) or room.squeeze(width, 11.0, (width / 2, 12.0))
-    x = place.x0 + 3.0
-    shaft = arrow((x, place.y1), (x, place.y0 + 0.5), 5.0, Role.NOTE)
-    return shaft + Drawing((Text((x + 5.0, place.y0 + 2.5), "FRONT", 5.0, bold=True, over=True),))
+    x = 3.0 - width / 2
+    shaft = arrow((x, 5.5), (x, -5.0), 5.0, Role.NOTE)
+    return Wording(shaft + Drawing((Text((x + 5.0, -3.0), "FRONT", 5.0, bold=True, over=True),)), width, 11.0)
 
 
-def _first_fit(room: Room, sizes: tuple[Lettered, ...], wanted: Point) -> Drawing:
-    return _placed(room, sizes, wanted)[0]
-
-
-def _placed(room: Room, sizes: tuple[Lettered, ...], wanted: Point) -> tuple[Drawing, Box]:
-    """The first wording that finds room, else the last one where it is least crowded; and the patch that it takes."""
-    for words in sizes:
-        place = room.find(words.width_mm + 2.0, words.height_mm + 1.0, wanted)
-        if place:
-            return words.set_in(place), place
-    place = room.squeeze(sizes[-1].width_mm, sizes[-1].height_mm, wanted)
-    return sizes[-1].set_in(place), place
-
-
-def _leader(box: Box, centre: Point) -> Drawing:
-    """A line from a block of words to its mortise, where the block is not plainly beside it."""
-    near = (min(max(centre[0], box.x0), box.x1), min(max(centre[1], box.y0), box.y1))
-    apart = math.dist(near, centre)
-    if apart <= LEADER_FROM_MM:
-        return Drawing()
-    end = along(centre, bearing_deg((near[0] - centre[0], near[1] - centre[1])), LEADER_SHORT_MM)
-    return Drawing((line(near, end, Role.FURNITURE),))
-
-
-def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Lettered, ...]:
+def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Wording, ...]:
     name = (leg.name, 3.5, True)
     if not in_full(assembly, leg, face):
-        return (Lettered(((leg.name, 2.5, False),)),) if sections(leg, face) else ()
+        return (block((leg.name, 2.5, False)),) if sections(leg, face) else ()
     if leg.kind == "spindle":
-        return (Lettered(((leg.name, 2.5, True), (f"lean {format_angle(leg.drill.resultant_deg)}", 2.5, False))),)
+        return (block((leg.name, 2.5, True), (f"lean {format_angle(leg.drill.resultant_deg)}", 2.5, False)),)
     hole = (bore_words(assembly, leg), 2.5, False)
     if not leg.drill.leans:
-        return (Lettered((name, ("square to the face", 2.5, False), hole)),)
+        return (block(name, ("square to the face", 2.5, False), hole),)
     lean, bevel = format_angle(leg.drill.resultant_deg), format_angle(leg.drill.bevel_deg)
     sight, complement = sightline_words(leg)
     rest = [(complement, 2.5, False), hole]
@@ -238,7 +176,7 @@ def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Lettered, ...]
     large = [name, (f"lean {lean}", 5.0, True), (f"bevel {bevel}", 3.5, False), (sight, 3.5, False), *rest]
     middling = [name, (f"lean {lean}  bevel {bevel}", 3.5, False), (sight, 2.5, False), *rest]
     small = [name, (f"lean {lean}", 2.5, False), (f"bevel {bevel}", 2.5, False), (sight, 2.5, False), *rest]
-    return (Lettered(tuple(large)), Lettered(tuple(middling)), Lettered(tuple(small)))
+    return (block(*large), block(*middling), block(*small))
 
 
 def sightline_words(leg: Leg) -> tuple[str, str]:
@@ -269,15 +207,15 @@ def _role(assembly: Assembly, face: Face) -> str:
     return f"bore the {' and '.join(f'{kind}s' for kind in dict.fromkeys(here))} from this face"
 
 
-def _title_words(assembly: Assembly, face: Face) -> tuple[Lettered, ...]:
+def _title_words(assembly: Assembly, face: Face) -> tuple[Wording, ...]:
     role = _role(assembly, face)
     left = "left legs are on your right" if face == "underside" else "left legs are on your left"
     name = assembly.furniture.name
     lines = ((f"{face.upper()}", 7.0, True), (name, 3.5, False), (role, 3.5, False), (left, 2.5, False))
     return (
-        Lettered(lines),
-        Lettered(((face.upper(), 5.0, True), (role, 2.5, False), (left, 2.5, False))),
-        Lettered(((face.upper(), 5.0, True),)),
+        block(*lines, clear_mm=APART_MM),
+        block((face.upper(), 5.0, True), (role, 2.5, False), (left, 2.5, False)),
+        block((face.upper(), 5.0, True)),
     )
 
 
@@ -302,25 +240,25 @@ def _turn_about_middle(assembly: Assembly, leg: Leg) -> float:
     return bearing_deg((x, y - assembly.blank.middle_y_mm))
 
 
-def _proof_words(assembly: Assembly, face: Face) -> tuple[Lettered, ...]:
+def _proof_words(assembly: Assembly, face: Face) -> tuple[Wording, ...]:
     found = proofs(assembly, face)
     rows = [(f"{p} – {q}  {assembly.length(mm)}", 2.5, False) for p, q, mm in found]
     head = ("Proof lengths, centre to centre", 2.5, True)
-    blocks = [Lettered((head, *rows)), Lettered((head, *rows[:4])), Lettered((head, *rows[-2:]))]
+    blocks = [block(head, *rows, clear_mm=APART_MM), block(head, *rows[:4]), block(head, *rows[-2:])]
     return tuple(blocks[:1] if len(rows) <= 2 else blocks)
 
 
-def _grain(assembly: Assembly, face: Face, room: Room) -> Drawing:
+def _grain(assembly: Assembly, face: Face) -> Iterator[Label]:
     """The grain's arrow, its angle measured from the fore-and-aft line toward the right as seen from above."""
     grain = assembly.furniture.seat.grain
     if grain is None:
-        return Drawing()
+        return
     grain_deg = GRAIN_DEG[grain] if isinstance(grain, str) else grain
     bounds = assembly.blank.bounds
     direction = face_map(face).vector(along((0.0, 0.0), 90.0 - grain_deg, 22.0))
     width, height = (max(2 * abs(reach) + 6.0, 14.0) for reach in direction)
-    wanted = (bounds.x0 + 0.25 * bounds.width, bounds.y0 + 0.5 * bounds.height)
-    middle = (room.find(width, height, wanted) or room.squeeze(width, height, wanted)).centre
-    ends = [(middle[0] + k * direction[0], middle[1] + k * direction[1]) for k in (1, -1)]
-    both = arrow(middle, ends[0], 4.0, Role.NOTE) + arrow(middle, ends[1], 4.0, Role.NOTE)
-    return both + Drawing((Text((middle[0], middle[1] - 1.2), "grain", 2.5, align="centre", over=True),))
+    x, y = direction
+    both = arrow((0.0, 0.0), (x, y), 4.0, Role.NOTE) + arrow((0.0, 0.0), (-x, -y), 4.0, Role.NOTE)
+    word = Drawing((Text((0.0, -1.2), "grain", 2.5, align="centre", over=True),))
+    near = (bounds.x0 + 0.25 * bounds.width, bounds.y0 + 0.5 * bounds.height)
+    yield Label((Wording(both + word, width, height),), near)

@@ -1,4 +1,4 @@
-"""Which pages of a grid have ink, and the fewest of them that show all of it.
+"""Which pages of a grid have ink, the fewest of them that show all of it, and what links these.
 
 Owns the ink of a drawing as the choice of a grid sees it, a grid's zones and the cover of these by pages; which grid is
 best is `grid`'s. Imports `geometry` only, and numpy. Millimetres; axes: x to the right, y up; rows count upward.
@@ -14,6 +14,7 @@ from __future__ import annotations
 import math
 from collections.abc import Iterable
 from functools import cached_property
+from itertools import product
 from typing import NamedTuple
 
 import numpy as np
@@ -254,3 +255,36 @@ def _fewest(needs: list[frozenset[Page]]) -> list[Page]:
     while (found := meet(needs, pages)) is None:
         pages += 1
     return found
+
+
+def joined(kept: Bools) -> Bools:
+    """The kept pages (rows, columns), with linking ones added where some share no strip with the others.
+
+    Such pages could not be laid truly: what links them is found along a row, then along a column, the nearest first.
+    """
+    linked = kept.copy()
+    while True:
+        island, rest = _island({(r, c) for r, c in np.argwhere(linked).tolist()})
+        if not rest:
+            return linked
+        start, end = min(product(sorted(island), sorted(rest)), key=lambda pair: _steps(*pair))
+        rows, columns = sorted((start[0], end[0])), sorted((start[1], end[1]))
+        linked[start[0], columns[0] : columns[1] + 1] = True
+        linked[rows[0] : rows[1] + 1, end[1]] = True
+
+
+def _island(pages: set[Page]) -> tuple[set[Page], set[Page]]:
+    """The pages that hang together with the first by whole sides, and the rest: a corner would not fix the angle."""
+    rest = set(pages)
+    found: set[Page] = set()
+    ahead = {min(rest)}
+    while ahead:
+        row, column = ahead.pop()
+        rest.discard((row, column))
+        found.add((row, column))
+        ahead |= rest & {(row + 1, column), (row - 1, column), (row, column + 1), (row, column - 1)}
+    return found, rest
+
+
+def _steps(p: Page, q: Page) -> int:
+    return abs(p[0] - q[0]) + abs(p[1] - q[1])

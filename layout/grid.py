@@ -30,6 +30,7 @@ from layout.cover import (
     cover,
     hits,
     inked,
+    joined,
     spans,
     weigh,
 )
@@ -82,9 +83,9 @@ class _Grid(NamedTuple):
 def choose_grid(request: GridRequest, window_sizes: Sequence[tuple[float, float]]) -> GridChoice:
     """The best grid over all offsets and window sizes (width, height), mm.
 
-    First by fewest pages, then by the points' distance from seams as far as it matters, then by fewest seams that the
-    outline crosses, then by the order of the sizes, by little ink in shared strips, by even margins. Raises ValueError
-    where there is no ink, no size, or a window not larger than two overlaps.
+    First by fewest pages, linking ones included, then by the points' distance from seams as far as it matters, then by
+    fewest seams that the outline crosses, then by the order of the sizes, by little ink in shared strips, by even
+    margins. Raises ValueError where there is no ink, no size, or a window not larger than two overlaps.
     """
     if not window_sizes or min(min(size) for size in window_sizes) <= 2 * request.overlap_mm:
         raise ValueError(f"each window must be larger than two overlaps of {request.overlap_mm} mm: {window_sizes}")
@@ -331,7 +332,7 @@ class _Search:
 
     def _count(self, frame: Frame, at: Floats) -> None:
         """Take the best of the grids at the offsets (n, 2), counted exactly, if it is better than what is found."""
-        kept = np.array([cover(zones) for zones in inked(frame, self.sheet.segments, at)])
+        kept = np.array([joined(cover(zones)) for zones in inked(frame, self.sheet.segments, at)])
         pages = kept.sum((1, 2))
         least = pages == pages.min()
         at, kept = at[least], kept[least]

@@ -16,6 +16,7 @@ from layout.flow import Block, BlockPlace, flow
 from layout.flow import fits as block_fits
 from layout.furniture import PageWords, TilePlace, bands
 from layout.geometry import Affine, Box
+from layout.labels import lettered
 from layout.marks import SeamMark, page_marks, place_marks, seam_drawing
 from layout.packed import PackedPage, misfit_packed, pack_pieces
 from layout.paper import DoesNotFitPaper, Paper, misfit
@@ -59,6 +60,7 @@ def compose(title: str, pieces: Sequence[Piece], paper: Paper) -> Document:
     boxed = [(piece, ink_box(piece)) for piece in pieces]
     _check_fit(boxed, paper)
     tilings = {piece.name: tile_piece(piece, box, paper) for piece, box in boxed if piece.handling == "tile"}
+    boxed = [(tilings[piece.name].piece if piece.name in tilings else lettered(piece), box) for piece, box in boxed]
     boxed = _with_maps(boxed, tilings, paper)
     drafts = [draft for group in _groups(boxed) for draft in _drafts(group, tilings, paper)]
     labels = _labels(drafts)

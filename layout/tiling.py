@@ -8,7 +8,7 @@ from the left, rows from the top. Windows are laid boxes, mm.
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from functools import cached_property
 from itertools import pairwise, product
 from typing import NamedTuple
@@ -18,6 +18,7 @@ import numpy as np
 from layout.drawing import Drawing, Primitive, Role, Stroke, Text
 from layout.geometry import Affine, Box, Point, box_of
 from layout.grid import GridRequest, choose_grid
+from layout.labels import lettered, lettered_off
 from layout.operations import bounds, polylines
 from layout.paper import Paper
 from layout.piece import Piece
@@ -135,13 +136,60 @@ def ink_box(piece: Piece) -> Box:
 
 
 def tile_piece(piece: Piece, ink: Box, paper: Paper) -> Tiling:
-    """The piece (its ink's bounds are `ink`) on one page where it fits, else over the fewest overlapping ones."""
+    """The piece (its ink's bounds are `ink`) on one page where it fits, else over the fewest overlapping ones.
+
+    The tiling's piece has its labels set, off the seams where there is room.
+    """
+    return _on_one_page(piece, ink, paper) or _on_several(piece, paper)
+
+
+def _on_one_page(piece: Piece, ink: Box, paper: Paper) -> Tiling | None:
     for turn_deg, size in product((0.0, 90.0), paper.page_sizes_mm):
-        laid = Affine.turn(turn_deg)
-        box, window = ink.mapped(laid), paper.window(size)
-        if box.width <= window.width and box.height <= window.height:
-            return Tiling(piece, size, laid, (Tile(None, 0, 0, _centred(box, window)),))
-    return _gridded(piece, paper)
+        laid, window = Affine.turn(turn_deg), paper.window(size)
+        if _fits(ink.mapped(laid), window):
+            whole = lettered(piece)
+            box = (ink_box(whole) if piece.labels else ink).mapped(laid)
+            if _fits(box, window):
+                return Tiling(whole, size, laid, (Tile(None, 0, 0, _centred(box, window)),))
+    return None
+
+
+def _fits(box: Box, window: Box) -> bool:
+    return box.width <= window.width and box.height <= window.height
+
+
+def _on_several(piece: Piece, paper: Paper) -> Tiling:
+    """Pages for the lines, and words where these pages leave room; or pages for lines and words as they come."""
+    tiling = _gridded(piece, paper)
+    if not piece.labels:
+        return tiling
+    strips, gaps = _shared_and_empty(tiling, paper.overlap_mm)
+    whole = lettered_off(piece, strips, gaps)
+    if whole is None:
+        return _gridded(lettered(piece), paper)
+    words = Drawing(whole.drawing.items[len(piece.drawing.items) :])
+    return replace(tiling, piece=whole, ink=tiling.ink + _inked(words))
+
+
+def _shared_and_empty(tiling: Tiling, overlap_mm: float) -> tuple[list[Box], list[Box]]:
+    """The strips that kept pages share, and the windows of the pages left out among them, in the piece's own mm."""
+    kept = {(tile.column, tile.row): tile.window for tile in tiling.tiles}
+    start, known = next(iter(kept.items()))
+    columns, rows = (range(max(cell[k] for cell in kept) + 1) for k in (0, 1))
+    strips, gaps = [], []
+    for cell in product(columns, rows):
+        if cell not in kept:
+            gaps.append(_window_at(cell, start, known, overlap_mm))
+            continue
+        for beside in ((cell[0] + 1, cell[1]), (cell[0], cell[1] + 1)):
+            if beside in kept:
+                strips.append(overlap_box(kept[cell], kept[beside]))
+    back = tiling.laid.inverse()
+    return [box.mapped(back) for box in strips], [box.mapped(back) for box in gaps]
+
+
+def _inked(drawing: Drawing) -> tuple[tuple[Point, ...], ...]:
+    return tuple(tuple(points) for points in polylines(drawing, INK_TOLERANCE_MM))
 
 
 def _centred(box: Box, window: Box) -> Box:
@@ -152,7 +200,7 @@ def _centred(box: Box, window: Box) -> Box:
 def _gridded(piece: Piece, paper: Paper) -> Tiling:
     """The grid is chosen in the piece's own mm, where a turned page is a window turned back."""
     choices = list(product((0.0, 90.0), paper.page_sizes_mm))
-    ink = tuple(tuple(points) for points in polylines(piece.drawing, INK_TOLERANCE_MM))
+    ink = _inked(piece.drawing)
     outline = (points for points, item in zip(ink, piece.drawing.items, strict=True) if is_outline(item))
     request = GridRequest(
         ink=tuple(map(np.array, ink)),
@@ -167,7 +215,7 @@ def _gridded(piece: Piece, paper: Paper) -> Tiling:
     if turn_deg:
         kept = {(row, -column): box for (column, row), box in kept.items()}
     windows = {cell: box.mapped(laid) for cell, box in kept.items()}
-    return Tiling(piece, size, laid, _named(_joined_up(windows, paper.overlap_mm)), ink)
+    return Tiling(piece, size, laid, _named(windows), ink)
 
 
 def _window_size(paper: Paper, size_mm: tuple[float, float], turn_deg: float) -> tuple[float, float]:
@@ -199,42 +247,6 @@ def column_name(column: int) -> str:
         letters = chr(ord("A") + letter) + letters
         column -= 1
     return letters
-
-
-def _joined_up(windows: dict[Cell, Box], overlap_mm: float) -> dict[Cell, Box]:
-    """The windows, with linking ones added where pages share no strip with the others: they could not be laid truly."""
-    joined = dict(windows)
-    while True:
-        island = _island(joined)
-        rest = [cell for cell in joined if cell not in island]
-        if not rest:
-            return joined
-        start, end = min(product(sorted(island), sorted(rest)), key=lambda pair: _steps(*pair))
-        for cell in _path(start, end):
-            joined.setdefault(cell, _window_at(cell, start, joined[start], overlap_mm))
-
-
-def _island(windows: dict[Cell, Box]) -> set[Cell]:
-    """The cells that hang together with the first one by whole sides: one mark in a corner would not fix the angle."""
-    found: set[Cell] = set()
-    ahead = [min(windows)]
-    while ahead:
-        column, row = cell = ahead.pop()
-        if cell in windows and cell not in found:
-            found.add(cell)
-            ahead += [(column + i, row + j) for i, j in ((1, 0), (-1, 0), (0, 1), (0, -1))]
-    return found
-
-
-def _steps(p: Cell, q: Cell) -> int:
-    return abs(p[0] - q[0]) + abs(p[1] - q[1])
-
-
-def _path(start: Cell, end: Cell) -> list[Cell]:
-    """The cells from one to the other: along the row, then along the column."""
-    columns = range(min(start[0], end[0]), max(start[0], end[0]) + 1)
-    rows = range(min(start[1], end[1]), max(start[1], end[1]) + 1)
-    return [*((column, start[1]) for column in columns), *((end[0], row) for row in rows)]
 
 
 def _window_at(cell: Cell, known: Cell, box: Box, overlap_mm: float) -> Box:

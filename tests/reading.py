@@ -205,4 +205,6 @@ def _tick_mm(data: bytes, page: int, point: XY, axis: int, hand: float, dpi: flo
     if dark.max() < 60:
         return None
     weights = np.where(dark > dark.max() / 3, dark, 0.0)
+    if np.count_nonzero(weights) * pixel[axis] > reach:
+        return None  # a dash that lies along the bar, no tick across it
     return origin[axis] + float((weights * (np.arange(len(dark)) + 0.5)).sum() / weights.sum()) * pixel[axis]

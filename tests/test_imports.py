@@ -19,6 +19,7 @@ LAYERS = (
     {"geometry", "faces", "files"},
     {"lettering", "drawing", "room", "cover", "flow"},
     {"shapes", "operations", "piece", "ink", "grid"},
+    {"labels"},
     {"document", "paper", "packing"},
     {"tiling", "furniture"},
     {"marks", "scale_check"},
@@ -26,7 +27,7 @@ LAYERS = (
     {"pages"},
 )
 # What a drawing is made with, which chairs may use too.
-GROUND = {"geometry", "drawing", "shapes", "lettering", "operations", "piece", "room"}
+GROUND = {"geometry", "drawing", "shapes", "lettering", "operations", "piece", "labels"}
 # One writer per kind of file: above everything, yet each reads a finished document and nothing of how it was laid out.
 WRITERS = {"pdf", "report"}
 WRITERS_READ = GROUND | {"document", "faces", "ink"}

@@ -12,9 +12,11 @@ from shapely import Point
 
 from jigs.bores import sections
 from jigs.quantities import format_angle
-from jigs.template import MOST_PROOFS, SIGHTLINE_RUN_MM, edge_distances_mm, proofs, template
+from jigs.template import MOST_PROOFS, SIGHTLINE_RUN_MM, edge_distances_mm, proofs
+from jigs.template import template as unlettered
 from layout.drawing import Role
 from layout.geometry import Arc, flatten
+from layout.labels import lettered
 from layout.operations import bounds
 from tests.jigs.conftest import DEMOS, FACES, clashes, demo, fills, patch, polygon, stool, strokes, texts
 
@@ -23,6 +25,11 @@ SKEW_LEGS = [
     {"name": "near", "at": [120, 60], "splay": 9, "rake": 12, "mortise": {"bit": 16, "taper": 6}},
     {"name": "far", "at": [-110, 230], "splay": 14, "rake": 4, "mortise": {"bit": 16, "taper": 6}},
 ]
+
+
+def template(assembly, face):
+    """The template with its words, as it comes out where one page holds it."""
+    return lettered(unlettered(assembly, face))
 
 
 def skew(face="underside", **seat):

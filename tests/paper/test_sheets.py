@@ -18,7 +18,7 @@ from jigs import registry
 from jigs.assembly import assemble
 from jigs.spec import read_spec
 from layout.document import Document, Page, Placement
-from layout.drawing import Drawing, Stroke
+from layout.drawing import Drawing, Stroke, Text
 from layout.geometry import Affine, Box
 from layout.operations import bounds
 from layout.pages import compose
@@ -26,6 +26,7 @@ from layout.paper import paper_from
 from layout.pdf import pdf_bytes
 from layout.report import report
 from layout.scale_check import scale_check
+from layout.tiling import overlap_box
 from tests import reading
 
 DEMOS = sorted((Path(__file__).parents[2] / "demo_specs").glob("*.toml"))
@@ -255,3 +256,19 @@ def test_more_tiles_hardly_make_a_larger_file(demo: Path) -> None:
     more = len(many.document.pages) - len(few.document.pages)
     assert more > 4
     assert (len(many.data) - len(few.data)) / more < 4_000
+
+
+@each_demo
+@pytest.mark.parametrize("size", ["either", "a4", "letter"])
+def test_every_word_of_a_template_can_be_read_whole_on_one_page(demo: Path, size: str) -> None:
+    document = made(demo, size).document
+    shown = defaultdict(list)
+    for page in document.pages:
+        for placement in page.placements:
+            if placement.piece.handling == "tile":
+                shown[placement.piece.name].append(placement.window)
+    for piece in document.pieces:
+        for item in piece.drawing.items if piece.name in shown else ():
+            if isinstance(item, Text):
+                box = bounds(Drawing((item,)))
+                assert any(overlap_box(box, window) == box for window in shown[piece.name]), (piece.name, item.text)
