@@ -25,7 +25,7 @@ from layout.shapes import line, measure, polyline
 # Scales, largest first, as the number that a true mm is divided by: those of ISO 5455 and the shop's own between them.
 SCALES = (1, 2, 4, 5, 6, 8, 10, 12, 16, 20, 25, 32, 40, 50, 100)
 # Room for the three views one above the other, and the gaps between them, on paper.
-HEIGHT_MM, GAP_MM = 138.0, 20.0
+HEIGHT_MM, GAP_MM = 141.0, 20.0
 # Chords of an outline in the views (true mm; a hair at any of the scales).
 _VIEW_TOLERANCE_MM = 0.5
 # Beside the views stand the dimensions of height: the seat's, and the whole where something rises above it.
