@@ -85,3 +85,17 @@ def test_the_readme_names_every_shape_and_every_sheet() -> None:
     shapes = [get_args(seat.model_fields["shape"].annotation)[0] for seat in get_args(Seat)]
     assert all(f"| `{shape}` |" in TEXT for shape in shapes)
     assert all(f"`{sheet}`" in TEXT for sheet in SHEETS)
+
+
+def test_the_readme_names_every_key_of_a_spec() -> None:
+    from typing import get_args
+
+    from jigs import spec_legs
+    from jigs.spec import Furniture, Seat
+    from jigs.spec_base import Table
+
+    tables = [model for model in vars(spec_legs).values() if isinstance(model, type) and issubclass(model, Table)]
+    keys = {key for model in (*tables, Furniture, *get_args(Seat)) for key in model.model_fields}
+    told = set(re.findall(r"[a-z_]+", TEXT))
+    assert len(keys) > 50
+    assert keys <= told, sorted(keys - told)
