@@ -81,7 +81,7 @@ class Card(NamedTuple):
 
     A card always stands with its foot arrow to the right as printed, on the inner side of the mortise, where there is
     seat to stand on. `lean_deg` is the bit's: from the underside the bit leans with the arrow (positive for a leg that
-    leans outward), from the top against it.
+    leans outward), from the top against it. The card of a part that stands square has no arrow: `toward` is "".
     """
 
     kind: str
@@ -101,8 +101,13 @@ _KINDS = (
 )
 
 
+_SQUARE_LINES = "the across line, then on the fore-and-aft line"
+
+
 def cards(assembly: Assembly) -> tuple[Card, ...]:
     """One card for each different resultant, splay and rake at the face, legs first, then posts and spindles.
+
+    Parts that stand square to the face share one card that is square.
 
     Spindles whose angles lie within SPINDLE_ANGLE_DEG of each other share a card at the middle of theirs.
     """
@@ -115,11 +120,14 @@ def cards(assembly: Assembly) -> tuple[Card, ...]:
 def _cards_for(parts: tuple[Leg, ...], within_deg: float) -> Iterator[Card]:
     for kind, on, toward in _KINDS:
         # A part on the centre line has no side to splay to.
-        sided = [leg for leg in parts if leg.side or kind != "splay"]
+        sided = [leg for leg in parts if leg.drill.leans and (leg.side or kind != "splay")]
         for angle, half, legs in _shared(sided, [_angle(leg, kind) for leg in sided], within_deg):
             shank = 1.0 if legs[0].leans_with_bit else -1.0
             names = tuple(leg.name for leg in legs)
             yield Card(kind, shank * angle, names, on, toward[legs[0].kind], legs[0].drilled, half)
+    square = [leg for leg in parts if not leg.drill.leans]
+    if square:
+        yield Card("resultant", 0.0, tuple(leg.name for leg in square), _SQUARE_LINES, "", square[0].drilled)
 
 
 def _angle(leg: Leg, kind: str) -> float:
@@ -204,20 +212,22 @@ def _wall_words(card: Card, shape: Net, angle: str) -> Iterator[Drawing]:
         yield Drawing((Text((left, y - 7.5), f"bevel {format_angle(90.0 - abs(card.lean_deg))}", 3.5),))
         y -= 7.5
     what = {"resultant": "lean of the bit", "splay": "splay of the bit", "rake": "rake of the bit"}[card.kind]
-    block, y = paragraph((left, y - 4.0), what, 3.5, width, bold=True)
+    block, y = paragraph((left, y - 4.0), what if card.toward else "square to the face", 3.5, width, bold=True)
     yield block
     names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 2.7 * width, 2.5), 2.5, width)
     yield names
     if card.within_deg > SAME_ANGLE_DEG:
         block, y = paragraph((left, y - 1.0), f"all within {format_angle(card.within_deg, 2)}", 2.5, width)
         yield block
+    leaning, leans = ("leaning edge", "leans") if card.toward else ("upright edge", "stands")
     for words in (
-        f"stand the fold on {card.line}, on the {card.face}, leaning edge at the mortise",
-        "that edge, on the right, leans with the bit",
+        f"stand the fold on {card.line}, on the {card.face}, {leaning} at the mortise",
+        f"that edge, on the right, {leans} with the bit",
     ):
         block, y = paragraph((left, y - 2.0), words, 2.5, width)
         yield block
-    yield _foot_arrow(card, shape)
+    if card.toward:
+        yield _foot_arrow(card, shape)
     yield _buttress_words()
 
 

@@ -346,3 +346,21 @@ def test_a_bevels_card_has_two_lines_at_the_bevel_to_each_other(name):
         near = SAME_ANGLE_DEG if part.kind != "spindle" else SPINDLE_ANGLE_DEG
         assert min(abs(angle - part.drill.bevel_deg) for angle in found) <= near / 2 + 1e-9
     assert len(found) == len({round(angle, 6) for angle in found})
+
+
+def test_legs_that_stand_square_share_one_square_card_without_an_arrow():
+    legs = [{"name": "front", "at": [120, 60], "mirror": True, "splay": 0, "rake": 0, "mortise": 25}]
+    legs += [{"name": "back", "at": [0, 240], "rake": 12, "mortise": 25}]
+    assembly = stool(legs)
+    made = cards(assembly)
+    assert [(card.kind, card.legs) for card in made] == [
+        ("resultant", ("back",)),
+        ("rake", ("back",)),
+        ("resultant", ("front left", "front right")),
+    ]
+    (square,) = [piece for piece in card_pieces(assembly) if piece.name == "card 3 resultant"]
+    said = [text.text for text in texts(square.drawing)]
+    assert "square to the face" in said
+    assert not {"FOOT", "OWN SIDE", "OWN END"} & set(said)
+    assert fills(square.drawing) == []
+    assert net(made[2].lean_deg).leaning_edge[0][0] == net(made[2].lean_deg).leaning_edge[1][0]
