@@ -7,6 +7,7 @@ geometry in space. Lengths in mm, volumes in mm³, densities in kg/m³, weights 
 from __future__ import annotations
 
 import math
+import re
 from dataclasses import dataclass
 from typing import NamedTuple
 
@@ -19,6 +20,11 @@ MM3_PER_BOARD_FOOT = 144 * float(MM_PER_INCH) ** 3
 # Density at 12 % moisture is 1000 kg/m³ × specific gravity (oven-dry mass over volume at 12 %) × 1.12: FPL, Wood
 # Handbook, GTR-190 (2010) and GTR-282 (2021).
 DENSITY_KG_M3 = 1120.0
+# A density that the maker gives, and what wood weighs: from balsa to lignum vitae with room to spare (memory).
+_DENSITY = re.compile(r"(\d{1,4}(?:\.\d{1,3})?) ?(kg/m|lb/ft)[3³]", re.ASCII)
+DENSITIES_KG_M3 = (80.0, 1400.0)
+# Exact by the definitions of the pound (1959) and the foot.
+KG_M3_PER_LB_FT3 = 0.45359237 / 0.3048**3
 
 # What stands out above the seat, to be wedged and cut flush (practice).
 TENON_BEYOND_MM = 6.0
@@ -70,22 +76,37 @@ class UnknownSpeciesError(ValueError):
 
 
 def density_kg_m3(species: str) -> float:
-    """At 12 % moisture. Case, hyphens and runs of spaces do not matter.
+    """At 12 % moisture, of a species or as the maker gives it: "560 kg/m³", "35 lb/ft³".
 
-    Raises UnknownSpeciesError, which names the nearest.
+    Case, hyphens and runs of spaces do not matter. Raises UnknownSpeciesError, which names the nearest.
     """
-    return DENSITY_KG_M3 * SPECIES[species_name(species)].specific_gravity
+    given = _given_kg_m3(species)
+    return DENSITY_KG_M3 * SPECIES[species_name(species)].specific_gravity if given is None else given
 
 
 def species_name(species: str) -> str:
-    """The wood as the table writes it. Raises UnknownSpeciesError."""
+    """The wood as the table writes it, or the density as the maker gives it. Raises UnknownSpeciesError."""
+    if _given_kg_m3(species) is not None:
+        return _DENSITY.sub(r"\1 \2³", species.strip())
     names = {_plain(name): name for name in SPECIES}
     plain = _plain(species)
     if plain in names:
         return names[plain]
     close = nearest(plain, list(names))
-    cure = f"did you mean {shown(names[close])}?" if close else "there are " + ", ".join(SPECIES)
-    raise UnknownSpeciesError(species, cure)
+    known = f"did you mean {shown(names[close])}?" if close else f"there are {', '.join(SPECIES)}."
+    raise UnknownSpeciesError(species, f'{known} Or give its density, such as "560 kg/m³"')
+
+
+def _given_kg_m3(species: str) -> float | None:
+    """The density that is written in place of a species, None where none is. Raises UnknownSpeciesError out of range."""
+    found = _DENSITY.fullmatch(species.strip())
+    if found is None:
+        return None
+    density = float(found[1]) * (KG_M3_PER_LB_FT3 if found[2] == "lb/ft" else 1.0)
+    low, high = DENSITIES_KG_M3
+    if not low <= density <= high:
+        raise UnknownSpeciesError(species, f"wood weighs {low:.0f} to {high:.0f} kg/m³")
+    return density
 
 
 def _plain(species: str) -> str:

@@ -77,7 +77,9 @@ def test_case_hyphens_and_spaces_do_not_matter(spelling):
 def test_a_misspelt_wood_is_told_the_nearest_one():
     with pytest.raises(UnknownSpeciesError) as error:
         density_kg_m3("yelow poplar")
-    assert str(error.value) == '"yelow poplar" is not a wood in the table; did you mean "yellow-poplar"?'
+    assert str(error.value) == (
+        '"yelow poplar" is not a wood in the table; did you mean "yellow-poplar"? Or give its density, such as "560 kg/m³"'
+    )
 
 
 def test_a_wood_like_none_is_told_all_of_them():
@@ -180,3 +182,26 @@ def test_legs_are_turned_from_squares_and_weigh_what_is_left_of_them():
 
 def test_stuff_of_a_wood_that_is_not_said_has_no_weight():
     assert cut_row("rail", 1, 400.0, (60.0, 25.0), 1e5, None).weight_kg is None
+
+
+@pytest.mark.parametrize(
+    ("given", "kg_m3", "name"),
+    [("560 kg/m3", 560.0, "560 kg/m³"), (" 612.5kg/m³ ", 612.5, "612.5 kg/m³"), ("35 lb/ft3", 560.646, "35 lb/ft³")],
+)
+def test_a_wood_that_is_in_no_table_is_given_by_its_density(given, kg_m3, name):
+    # 1 lb/ft³ is 16.0185 kg/m³: NIST SP 811, Appendix B (from memory).
+    assert density_kg_m3(given) == pytest.approx(kg_m3, abs=5e-4)
+    assert species_name(given) == name
+    assert density_kg_m3(species_name(given)) == density_kg_m3(given)
+
+
+@pytest.mark.parametrize("given", ["8 kg/m3", "9000 kg/m3", "0 lb/ft3", "100 lb/ft3"])
+def test_a_density_that_no_wood_has_is_refused(given):
+    with pytest.raises(UnknownSpeciesError, match=r"wood weighs 80 to 1400 kg/m³"):
+        density_kg_m3(given)
+
+
+@pytest.mark.parametrize("given", ["560", "560 kg", "560 lb/m3", "560 kg/ft3", "1e3 kg/m3", "-560 kg/m3"])
+def test_what_is_no_density_is_no_wood(given):
+    with pytest.raises(UnknownSpeciesError, match="give its density"):
+        density_kg_m3(given)
