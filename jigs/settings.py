@@ -73,7 +73,7 @@ _COLUMNS = (
     ("sight-", "line", 8),
     ("comple-", "ment", 8),
     ("", "bevel", 7),
-    ("leg", "length", 14),
+    ("outside", "the seat", 14),
 )
 
 

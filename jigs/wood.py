@@ -98,7 +98,7 @@ def species_name(species: str) -> str:
 
 
 def _given_kg_m3(species: str) -> float | None:
-    """The density that is written in place of a species, None where none is. Raises UnknownSpeciesError out of range."""
+    """The density given in place of a species, None where there is none. Raises UnknownSpeciesError out of range."""
     found = _DENSITY.fullmatch(species.strip())
     if found is None:
         return None

@@ -78,7 +78,8 @@ def test_a_misspelt_wood_is_told_the_nearest_one():
     with pytest.raises(UnknownSpeciesError) as error:
         density_kg_m3("yelow poplar")
     assert str(error.value) == (
-        '"yelow poplar" is not a wood in the table; did you mean "yellow-poplar"? Or give its density, such as "560 kg/m³"'
+        '"yelow poplar" is not a wood in the table; did you mean "yellow-poplar"? '
+        'Or give its density, such as "560 kg/m³"'
     )
 
 
