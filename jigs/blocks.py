@@ -6,6 +6,7 @@ layout's ground only. A block hangs from y = 0 down, from x = 0 to WIDTH_MM.
 
 from __future__ import annotations
 
+import math
 from collections.abc import Iterator, Sequence
 from typing import NamedTuple
 
@@ -26,7 +27,7 @@ _GUTTER_MM = 1.5
 # Where paragraphs begin, behind their number.
 _INDENT_MM = 7.0
 # Lines of a list in one block at most.
-_LIST_LINES = 30
+_LIST_LINES = 22
 
 
 class Column(NamedTuple):
@@ -127,10 +128,12 @@ def listed(title: str, items: Sequence[str], numbered: bool = False) -> Iterator
 
 
 def _spans(items: Sequence[str]) -> Iterator[tuple[int, int]]:
+    """Where the list is parted: into blocks about as long as each other, none longer than a page holds."""
+    heights = [len(wrap(words, WIDTH_MM - _INDENT_MM, BODY_MM)) for words in items]
+    enough = sum(heights) / max(1, math.ceil(sum(heights) / _LIST_LINES))
     start, taken = 0, 0
-    for k, words in enumerate(items):
-        lines = len(wrap(words, WIDTH_MM - _INDENT_MM, BODY_MM))
-        if k > start and taken + lines > _LIST_LINES:
+    for k, lines in enumerate(heights):
+        if k > start and (taken >= enough or taken + lines > _LIST_LINES):
             yield start, k
             start, taken = k, 0
         taken += lines
