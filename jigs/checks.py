@@ -2,7 +2,7 @@
 
 Owns the cautions about what is bored into the seat and about the whole piece; those about stretchers are `joinery`'s,
 how it stands is `loads`'. Every threshold is a named constant with its source. Imports `assembly`, `bores`, `grain`,
-`seats` and `layout.geometry`; no drawing.
+`seats` and layout's geometry and curves; no drawing.
 """
 
 from __future__ import annotations
@@ -20,7 +20,8 @@ from jigs.legs import Face, Leg
 from jigs.problems import Caution
 from jigs.quantities import MM_PER_INCH, format_angle
 from jigs.seats import Blank
-from layout.geometry import Affine, mapped
+from layout.curves import mapped
+from layout.geometry import Affine
 
 if TYPE_CHECKING:
     from jigs.statics import EdgeLoad, PublishedCase, Stability

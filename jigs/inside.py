@@ -1,7 +1,7 @@
 """The foot of a leg and the seat's outline above it: how far inside the seat the foot stands.
 
 Owns the foot's true shape on the floor, the outline as seen straight down, and the measure of `inside_side` and
-`inside_end`. Imports `frames`, `roots` and `layout.geometry`; no spec and no shapely.
+`inside_end`. Imports `frames`, `roots` and layout's geometry and curves; no spec and no shapely.
 
 All in plan in the floor frame, mm: x right from the centre line, y from plumb below the front edge to the back. The
 outline is that of the top face, foreshortened fore and aft by the cosine of the pitch.
@@ -26,7 +26,8 @@ from typing import NamedTuple
 
 from jigs.frames import Vector
 from jigs.roots import bracketed, real_roots
-from layout.geometry import Affine, Arc, Cubic, Curve, Line, Point, Segment, mapped
+from layout.curves import Arc, Cubic, Curve, Line, Segment, mapped
+from layout.geometry import Affine, Point
 
 Slopes = tuple[float, float]  # X and Y of a direction (X, Y, -1) in the floor frame
 

@@ -1,7 +1,7 @@
 """What a piece weighs and how it stands: from an assembly to the parts, feet and outline that `statics` sums.
 
-Owns the choice of densities and which parts are weighed. Imports `assembly`, `wood`, `layout.geometry`; `statics` only
-where it is used. No drawing. Floor frame in plan, mm.
+Owns the choice of densities and which parts are weighed. Imports `assembly`, `wood`, layout's geometry
+and curves; `statics` only where it is used. No drawing. Floor frame in plan, mm.
 """
 
 from __future__ import annotations
@@ -15,7 +15,8 @@ from jigs.assembly import Assembly
 from jigs.frames import Vector, further, minus, unit
 from jigs.legs import Leg
 from jigs.wood import density_kg_m3, species_name
-from layout.geometry import Affine, Point, flatten, mapped
+from layout.curves import flatten, mapped
+from layout.geometry import Affine, Point
 
 if TYPE_CHECKING:
     from jigs.statics import Part, Stability

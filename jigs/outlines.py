@@ -1,7 +1,7 @@
 """Outlines of seats made of lines and true arcs: round, oval, rectangle, D and polygon; and how one is refused.
 
 Owns these shapes and `OutlineError`. The shield is `shield`'s, path data `path_data`'s, the choice `seats`'.
-Imports `layout.geometry`, `quantities`; no spec and no shapely.
+Imports layout's geometry and curves, `quantities`; no spec and no shapely.
 
 Plan coordinates in mm: x to the right from the centre line, y from the front edge to the back. Every outline is closed
 and runs counter-clockwise.
@@ -14,7 +14,8 @@ from collections.abc import Iterable, Sequence
 from itertools import pairwise
 
 from jigs.quantities import MM_PER_INCH, Units, format_length
-from layout.geometry import Affine, Arc, Cubic, Curve, Line, Point, Segment, bearing_deg, mapped
+from layout.curves import Arc, Cubic, Curve, Line, Segment, mapped
+from layout.geometry import Affine, Point, bearing_deg
 
 # Points nearer than this are one point; what is shorter is not drawn.
 SAME_POINT_MM = 1e-6

@@ -1,8 +1,9 @@
 """SVG path data as an outline: M L H V C S Q T A Z, absolute and relative, one closed subpath.
 
-Owns the reading, stricter than the library's, and the conversion of elliptical arcs. Imports `layout.geometry`,
-`outlines`; fontTools only when a path is read. The numbers are plan coordinates, so y runs to the back and an arc's
-sweep flag 1 is counter-clockwise in plan. Nothing is flattened: quadratics are raised to cubics and arcs stay arcs.
+Owns the reading, stricter than the library's, and the conversion of elliptical arcs. Imports layout's geometry and
+curves, `outlines`; fontTools only when a path is read. The numbers are plan coordinates, so y runs to the back and an
+arc's sweep flag 1 is counter-clockwise in plan. Nothing is flattened: quadratics are raised to cubics and arcs stay
+arcs.
 """
 
 from __future__ import annotations
@@ -13,7 +14,8 @@ from collections.abc import Iterator
 
 from jigs.outlines import OutlineError, drawn, precise, raised, reversed_curve, signed_area_mm2
 from jigs.quantities import Units
-from layout.geometry import Arc, Cubic, Curve, Line, Point, Segment, cos_sin
+from layout.curves import Arc, Cubic, Curve, Line, Segment
+from layout.geometry import Point, cos_sin
 
 # An end this near to the start closes the outline.
 CLOSING_GAP_MM = 0.01

@@ -1,7 +1,8 @@
 """The seat blank: its outline in plan, looked over before anything is drawn on it, and what can be asked of it.
 
 Owns the choice of outline by the seat's shape, the checks that every outline must pass, and `Blank`. Imports
-`layout.geometry`, `outlines`, `shield`, `path_data` and the spec's seats; shapely only when an outline is looked over.
+layout's geometry and curves, `outlines`, `shield`, `path_data` and the spec's seats; shapely only when an outline is
+looked over.
 
 Plan coordinates in mm: x to the right from the centre line, y from the front edge to the back.
 """
@@ -31,7 +32,8 @@ from jigs.path_data import path_outline
 from jigs.quantities import Units, format_length
 from jigs.shield import shield_outline
 from jigs.spec import SEAT_SIZE_MM, DSeat, OvalSeat, PathSeat, PolygonSeat, RectangleSeat, RoundSeat, Seat, ShieldSeat
-from layout.geometry import Affine, Box, Curve, Point, Segment, ellipse_curve, flatten, segment_box, union
+from layout.curves import Curve, Segment, ellipse_curve, flatten, segment_box
+from layout.geometry import Affine, Box, Point, union
 
 if TYPE_CHECKING:
     from shapely import LinearRing, Polygon

@@ -1,6 +1,6 @@
 """The outline of a shield seat, as saddled seats have it: a bowed front, wide a third back, sides sweeping in.
 
-Owns its proportions. Imports `layout.geometry`, `outlines`; no spec and no shapely.
+Owns its proportions. Imports layout's geometry and curves, `outlines`; no spec and no shapely.
 Plan coordinates in mm: x to the right from the centre line, y from the front edge to the back. The right half is worked
 out from the front's middle to the back's and mirrored. Its curves meet without a kink but at the two front corners.
 """
@@ -12,7 +12,8 @@ from collections.abc import Callable
 
 from jigs.outlines import OutlineError, at_most, drawn, raised, refuse_radius, reversed_curve
 from jigs.quantities import Units, format_length
-from layout.geometry import Affine, Arc, Cubic, Curve, Point, bearing_deg, mapped
+from layout.curves import Arc, Cubic, Curve, mapped
+from layout.geometry import Affine, Point, bearing_deg
 
 # The seat is widest at this part of its depth.
 WIDEST = 1 / 3

@@ -10,7 +10,8 @@ from collections.abc import Callable
 from typing import NamedTuple
 
 from jigs.frames import Vector, further, minus, unit
-from layout.geometry import Arc, Curve, Line, Point
+from layout.curves import Arc, Curve, Line
+from layout.geometry import Point
 
 View = Callable[[Vector], Point]
 

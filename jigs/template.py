@@ -16,8 +16,9 @@ from jigs.grain import GRAIN_DEG
 from jigs.legs import Leg
 from jigs.quantities import format_angle
 from jigs.spec import Mortise
+from layout.curves import Curve, ellipse_curve, mapped
 from layout.drawing import Drawing, Primitive, Role, Stroke, Text, gather
-from layout.geometry import Affine, Curve, Point, along, bearing_deg, ellipse_curve, mapped
+from layout.geometry import Affine, Point, along, bearing_deg
 from layout.labels import block
 from layout.lettering import text_width_mm
 from layout.piece import Label, Piece, Wording

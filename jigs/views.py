@@ -17,8 +17,9 @@ from jigs.bores import bored_mm, sections
 from jigs.frames import Vector, further
 from jigs.legs import Leg
 from jigs.silhouettes import Bar, View, between, silhouette
+from layout.curves import Arc, Curve, flatten
 from layout.drawing import Drawing, Primitive, Role, Stroke, Text, gather
-from layout.geometry import Affine, Arc, Box, Curve, Point, bearing_deg, flatten
+from layout.geometry import Affine, Box, Point, bearing_deg
 from layout.operations import bounds, transform
 from layout.shapes import line, measure, polyline
 

@@ -1,7 +1,7 @@
 """What a drawing is: frozen primitives in millimetres, each with a role, compared with ==.
 
 Owns the primitives; composite shapes are `shapes`, changes are `operations`, ink is the writers'. Imports `geometry`
-only.
+and `curves` only.
 """
 
 from __future__ import annotations
@@ -11,7 +11,8 @@ from dataclasses import dataclass
 from enum import Enum
 from typing import Literal
 
-from layout.geometry import Curve, Point
+from layout.curves import Curve
+from layout.geometry import Point
 
 
 class Role(Enum):

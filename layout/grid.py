@@ -1,8 +1,8 @@
 """The page grid of a drawing larger than a page: how many windows, where, and which of them are left out.
 
-Owns the choice alone, in plain millimetres: no paper, no marks, no PDF. Imports `geometry` only, and numpy.
-Axes: x to the right, y up. A grid is windows of one size at a pitch of window less overlap; neighbours share a strip as
-wide as the overlap, and the seam between two kept neighbours is that strip's middle line.
+Owns the choice alone, in plain millimetres: no paper, no marks, no PDF. Imports `geometry`, `cover`,
+`seams` and numpy. Axes: x to the right, y up. A grid is windows of one size at a pitch of window less overlap;
+neighbours share a strip as wide as the overlap, and the seam between two kept neighbours is that strip's middle line.
 
 How: over a range of offsets `cover` bounds the pages from below, and the range's size bounds the points' clearance from
 above, so a search that divides ranges leaves out only what cannot be better. What it takes has been counted on the ink
@@ -26,7 +26,6 @@ from layout.cover import (
     Frame,
     Ints,
     Sheet,
-    counts,
     cover,
     hits,
     inked,
@@ -35,13 +34,12 @@ from layout.cover import (
     weigh,
 )
 from layout.geometry import Box, Point
+from layout.seams import crossings, crowding, point_clearance, unevenness
 
 # A point to prick should not lie nearer to a seam than this.
 SEAM_MARGIN_MM = 12.0
 # Short of that margin the search goes on only for a clearance larger by this; the last bit is left to the final sweep.
 CLEARANCE_STEP_MM = 0.5
-# Grids whose shared strips hold about as much ink are told apart by their margins.
-CROWD_STEP_MM = 40.0
 # How much one step of the search may look at: zones of all its grids, grids counted exactly.
 _MOST_ZONES = 60_000
 _MOST_ROUNDS = 6
@@ -117,105 +115,6 @@ def _choice(grid: _Grid) -> GridChoice:
     return GridChoice(grid.frame.candidate, tuple(windows), grid.clearance)
 
 
-# --- what tells grids apart ------------------------------------------------------------------------------------------
-
-
-def _beside(axis: Axis, offset: Floats, at: Floats) -> tuple[Floats, Ints, Ints]:
-    """Place from the first cell's lower edge, the cell between seams, and the other column that shows the place."""
-    place = at[None, :] - offset[:, None] - axis.overlap / 2
-    own = np.clip(np.floor(place / axis.pitch), 0, axis.cells - 1).astype(np.int64)
-    into = place - own * axis.pitch
-    other = own - (into < axis.overlap / 2) + (into > axis.pitch - axis.overlap / 2)
-    return place, own, np.clip(other, 0, axis.cells - 1)
-
-
-def _clearance(frame: Frame, kept: Bools, at: Floats, points: Floats, own_only: bool = False) -> Floats:
-    """Smallest distance of a point to a side of its cell beyond which a page is kept: (n,), inf where there is none.
-
-    A point whose own cell's page is left out is measured in the cell of the page that shows it; with `own_only`, not.
-    """
-    across, column, other_column = _beside(frame.x, at[:, 0], points[:, 0])
-    up, row, other_row = _beside(frame.y, at[:, 1], points[:, 1])
-    n = np.arange(len(at))[:, None]
-    held = np.pad(kept, ((0, 0), (1, 1), (1, 1)))
-    if not own_only:
-        for r, c in ((row, other_column), (other_row, column), (other_row, other_column)):
-            move = ~kept[n, row, column] & kept[n, r, c]
-            row, column = np.where(move, r, row), np.where(move, c, column)
-    away_x, away_y = across - column * frame.x.pitch, up - row * frame.y.pitch
-    sides = (
-        (away_x, held[n, row + 1, column]),
-        (away_x - frame.x.pitch, held[n, row + 1, column + 2]),
-        (away_y, held[n, row, column + 1]),
-        (away_y - frame.y.pitch, held[n, row + 2, column + 1]),
-    )
-    reach = np.full(across.shape, np.inf)
-    for away, neighbour in sides:
-        reach = np.minimum(reach, np.where(neighbour & kept[n, row, column], np.abs(away), np.inf))
-    nearest: Floats = reach.min(1, initial=np.inf)
-    return nearest
-
-
-def _seam_cells(axis: Axis, cell: float, offset: Floats) -> tuple[tuple[Ints, Ints], tuple[Ints, Ints]]:
-    """Cells that each seam runs through, and those that each window shows: where a page beyond is left out, a seam runs
-    on to the window's edge.
-    """
-    cells = int((axis.high - axis.low) / cell) + 1
-
-    def index(at: Floats) -> Ints:
-        return np.clip(np.floor((at - axis.low) / cell).astype(np.int64), 0, cells)
-
-    starts = offset[:, None] + np.arange(axis.cells) * axis.pitch
-    seams = starts[:, 1:] + axis.overlap / 2
-    on_seam = np.floor((seams - axis.low) / cell).astype(np.int64)
-    shown = (index(starts), np.minimum(index(starts + axis.window) + 1, cells))
-    return (np.clip(on_seam, 0, cells), np.clip(on_seam + 1, 0, cells)), shown
-
-
-def _strip_cells(axis: Axis, cell: float, offset: Floats) -> tuple[tuple[Ints, Ints], tuple[Ints, Ints]]:
-    """Cells of each strip that two windows share, and those that each window shows."""
-    _, (first, last) = _seam_cells(axis, cell, offset)
-    return (first[:, 1:], last[:, :-1]), (first, last)
-
-
-def _crossings(sheet: Sheet, frame: Frame, kept: Bools, at: Floats) -> Ints:
-    """How many seams between kept pages the outline crosses, to within a cell of the table: (n,)."""
-    if not len(sheet.outline):
-        return np.zeros(len(at), np.int64)
-    seams_x, between_x = _seam_cells(frame.x, sheet.cell, at[:, 0])
-    seams_y, between_y = _seam_cells(frame.y, sheet.cell, at[:, 1])
-    upright = hits(sheet.outline_table, seams_x, between_y) & kept[:, :, :-1] & kept[:, :, 1:]
-    level = hits(sheet.outline_table, between_x, seams_y) & kept[:, :-1] & kept[:, 1:]
-    count: Ints = upright.sum((1, 2)) + level.sum((1, 2))
-    return count
-
-
-def _crowding(sheet: Sheet, frame: Frame, kept: Bools, at: Floats) -> Ints:
-    """How much ink lies in strips that two kept pages share, in steps of CROWD_STEP_MM: (n,).
-
-    Marks, and words to be read, are in each other's way there; a centre line along a seam is cut away.
-    """
-    strips_x, shown_x = _strip_cells(frame.x, sheet.cell, at[:, 0])
-    strips_y, shown_y = _strip_cells(frame.y, sheet.cell, at[:, 1])
-    upright = counts(sheet.ink_table, strips_x, shown_y) * (kept[:, :, :-1] & kept[:, :, 1:])
-    level = counts(sheet.ink_table, shown_x, strips_y) * (kept[:, :-1] & kept[:, 1:])
-    steps: Ints = ((upright.sum((1, 2)) + level.sum((1, 2))) * sheet.cell / CROWD_STEP_MM).astype(np.int64)
-    return steps
-
-
-def _unevenness(frame: Frame, kept: Bools, at: Floats) -> Floats:
-    """How far the margins on opposite sides of the kept range differ, mm: (n,)."""
-    total = np.zeros(len(at))
-    for axis, offset, side in ((frame.x, at[:, 0], 1), (frame.y, at[:, 1], 2)):
-        used: Bools = np.any(kept, axis=side)
-        first, last = used.argmax(1), axis.cells - 1 - used[:, ::-1].argmax(1)
-        total += np.abs(axis.low + axis.high - 2 * offset - (first + last) * axis.pitch - axis.window)
-    return total
-
-
-# --- the search ------------------------------------------------------------------------------------------------------
-
-
 class _Search:
     """Grids of several window sizes sought together, so that what one reaches spares the others."""
 
@@ -289,7 +188,7 @@ class _Search:
             zones = self._zones(frame, boxes)
             lower, _ = weigh(zones)
             size = (boxes[:, 1::2] - boxes[:, ::2]).max(1)
-            upper = _clearance(frame, zones[:, ::2, ::2], _middle(boxes), self.points, own_only=True) + size
+            upper = point_clearance(frame, zones[:, ::2, ::2], _middle(boxes), self.points, own_only=True) + size
             self._probe(frame, _middle(boxes[self._may_beat(lower, upper)]))
             left = np.flatnonzero(self._may_beat(lower, upper) & (size > self.sheet.cell))
             left = left[np.lexsort((-upper[left], lower[left]))]
@@ -317,7 +216,7 @@ class _Search:
         # A range turned inside out widens the zones by more than samples may be out: pages that surely suffice.
         inside_out = 1.5 * self.sheet.cell * np.array([1, -1, 1, -1])
         ample, _ = weigh(self._zones(frame, np.repeat(at, 2, axis=1) + inside_out))
-        clear = np.minimum(_clearance(frame, kept, at, self.points), self.enough)
+        clear = np.minimum(point_clearance(frame, kept, at, self.points), self.enough)
         for _ in range(_MOST_TRIES):
             may = np.flatnonzero(self._may_beat(lower, clear))
             if not len(may):
@@ -336,7 +235,7 @@ class _Search:
         pages = kept.sum((1, 2))
         least = pages == pages.min()
         at, kept = at[least], kept[least]
-        clearance = _clearance(frame, kept, at, self.points)
+        clearance = point_clearance(frame, kept, at, self.points)
         clear = -np.round(np.minimum(clearance, self.enough), 6)
         crossed, crowded, uneven = self._lesser(frame, kept, at)
         k = np.lexsort((at[:, 0], -at[:, 1], uneven, crowded, crossed, clear))[0]
@@ -347,8 +246,8 @@ class _Search:
 
     def _lesser(self, frame: Frame, kept: Bools, at: Floats) -> tuple[Ints, Ints, Floats]:
         """What tells apart grids with as many pages, as clear: seams crossed, ink in strips, uneven margins."""
-        crossed, crowded = _crossings(self.sheet, frame, kept, at), _crowding(self.sheet, frame, kept, at)
-        return crossed, crowded, np.round(_unevenness(frame, kept, at), 6)
+        crossed, crowded = crossings(self.sheet, frame, kept, at), crowding(self.sheet, frame, kept, at)
+        return crossed, crowded, np.round(unevenness(frame, kept, at), 6)
 
     def _sweep(self, frame: Frame, xs: Floats, ys: Floats) -> None:
         """Among a mesh of offsets, take the best by all that tells grids apart, counted exactly until one holds."""
@@ -359,10 +258,10 @@ class _Search:
         row, column = np.nonzero(forced <= pages)
         at = _thinned(np.stack((xs[column], ys[row]), axis=1), self._room(frame))
         lower, kept = weigh(self._zones(frame, np.repeat(at, 2, axis=1)))
-        clear = -np.round(np.minimum(_clearance(frame, kept, at, self.points), self.enough), 6)
+        clear = -np.round(np.minimum(point_clearance(frame, kept, at, self.points), self.enough), 6)
         good = (lower <= pages) & (clear <= self.found.rank[1])
         at, kept, clear = at[good], kept[good], clear[good]
-        crossed, uneven = _crossings(self.sheet, frame, kept, at), np.round(_unevenness(frame, kept, at), 6)
+        crossed, uneven = crossings(self.sheet, frame, kept, at), np.round(unevenness(frame, kept, at), 6)
         order = np.lexsort((at[:, 0], -at[:, 1], uneven, crossed, clear))[: _MOST_TRIES * _MOST_PROBES]
         before = self.found
         for some in np.array_split(order, range(_MOST_PROBES, len(order), _MOST_PROBES)):

@@ -9,8 +9,9 @@ from __future__ import annotations
 import math
 from collections.abc import Sequence
 
+from layout.curves import flatten
 from layout.drawing import Drawing, Role, Stroke, Text
-from layout.geometry import Affine, Box, Point, along, bearing_deg, flatten
+from layout.geometry import Affine, Box, Point, along, bearing_deg
 from layout.lettering import text_width_mm
 from layout.operations import polylines, transform
 from layout.piece import Label, Piece, Wording

@@ -1,6 +1,6 @@
 """What is done to drawings: transform, bounds, clip, flatten. Each returns new data and changes nothing.
 
-Imports `geometry`, `drawing` and `lettering` only.
+Imports `geometry`, `curves`, `drawing` and `lettering` only.
 """
 
 from __future__ import annotations
@@ -8,20 +8,9 @@ from __future__ import annotations
 import itertools
 import math
 
+from layout.curves import Curve, Line, Segment, flatten, mapped, segment_box
 from layout.drawing import Drawing, Fill, Primitive, Stroke, Text
-from layout.geometry import (
-    Affine,
-    Box,
-    Curve,
-    Line,
-    Point,
-    Segment,
-    bearing_deg,
-    flatten,
-    mapped,
-    segment_box,
-    union,
-)
+from layout.geometry import Affine, Box, Point, bearing_deg, union
 from layout.lettering import FALL, RISE, text_width_mm
 
 # Chords of a solid shape's edge stay this near to it when it is clipped.

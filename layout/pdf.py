@@ -15,10 +15,11 @@ from typing import Any
 
 from reportlab.pdfbase import pdfdoc, ttfonts
 
+from layout.curves import Arc, Cubic, Curve, Line, arc_as_cubics
 from layout.document import Document, Page, Placement
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
 from layout.faces import FACES, face, face_path
-from layout.geometry import Affine, Arc, Box, Cubic, Curve, Line, Point, along, arc_as_cubics, union
+from layout.geometry import Affine, Box, Point, along, union
 from layout.ink import INKS, WHITE
 from layout.lettering import em_mm, text_width_mm
 from layout.operations import text_corners

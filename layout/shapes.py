@@ -1,6 +1,6 @@
 """Composite shapes over the few primitives: circles, crosses, arrows, dimension lines, blocks of text.
 
-Imports `geometry`, `drawing` and `lettering` only.
+Imports `geometry`, `curves`, `drawing` and `lettering` only.
 """
 
 from __future__ import annotations
@@ -9,8 +9,9 @@ import itertools
 import math
 from collections.abc import Sequence
 
+from layout.curves import Curve, Line, circle_curve
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
-from layout.geometry import Box, Curve, Line, Point, along, bearing_deg, circle_curve
+from layout.geometry import Box, Point, along, bearing_deg
 from layout.lettering import wrap
 
 # Line pitch over capital height: ISO 3098-1 asks for at least 1.4 without accents, 1.9 with; ours carries accents.

@@ -17,9 +17,10 @@ HOUSE = ("cli", "jigs", "layout")
 # Layout's modules from the ground up. Each may import those of earlier layers, and no others.
 LAYERS = (
     {"geometry", "faces", "files"},
-    {"lettering", "drawing", "room", "cover", "flow"},
-    {"shapes", "operations", "piece", "ink", "grid"},
-    {"labels"},
+    {"curves", "lettering", "room", "cover", "flow"},
+    {"drawing"},
+    {"shapes", "operations", "piece", "ink", "seams"},
+    {"labels", "grid"},
     {"document", "paper", "packing"},
     {"tiling", "furniture"},
     {"marks", "scale_check"},
@@ -27,7 +28,7 @@ LAYERS = (
     {"pages"},
 )
 # What a drawing is made with, which chairs may use too.
-GROUND = {"geometry", "drawing", "shapes", "lettering", "operations", "piece", "labels"}
+GROUND = {"geometry", "curves", "drawing", "shapes", "lettering", "operations", "piece", "labels"}
 # One writer per kind of file: above everything, yet each reads a finished document and nothing of how it was laid out.
 WRITERS = {"pdf", "report"}
 WRITERS_READ = GROUND | {"document", "faces", "ink"}

@@ -10,8 +10,8 @@ from typing import Any
 
 from jigs.assembly import Assembly, assemble
 from jigs.spec import parse_spec, read_spec
+from layout.curves import Curve, flatten
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
-from layout.geometry import Curve, flatten
 from layout.operations import text_corners
 
 ROOT = Path(__file__).resolve().parents[2]

@@ -16,7 +16,7 @@ from jigs.checks import SEAT_HEIGHTS, THIN_EDGE_MM, THIN_FLOOR_MM, THIN_WEB_MM, 
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.problems import Caution
 from jigs.spec import parse_spec
-from layout.geometry import flatten
+from layout.curves import flatten
 from tests.jigs.conftest import BLAMELESS, DEMOS, LEG, _lines, demo, spec_text, stool
 
 

@@ -13,7 +13,7 @@ from shapely import Point, Polygon, affinity
 from jigs.assembly import assemble
 from jigs.loads import DEFAULT_DENSITY_KG_M3, standing, weighed_as, weight_parts, woods
 from jigs.spec import parse_spec
-from layout.geometry import flatten
+from layout.curves import flatten
 from tests.jigs.conftest import LEG, _lines, demo, spec_text, stool
 
 GRAVITY = 9.80665

@@ -10,8 +10,9 @@ import pytest
 
 from jigs.bores import sections
 from jigs.template import face_map, template
+from layout.curves import flatten
 from layout.drawing import Role
-from layout.geometry import Affine, flatten
+from layout.geometry import Affine
 from tests.jigs.conftest import BLAMELESS, demo, strokes
 from tests.jigs.furnished import (
     angles_of,

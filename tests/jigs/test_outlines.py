@@ -19,7 +19,8 @@ from jigs.outlines import (
     rectangle_outline,
     signed_area_mm2,
 )
-from layout.geometry import Affine, Arc, Cubic, Line, flatten, mapped, segment_box, union
+from layout.curves import Arc, Cubic, Line, flatten, mapped, segment_box
+from layout.geometry import Affine, union
 
 modest = settings(max_examples=20, deadline=None)
 sizes = st.floats(50, 1500)

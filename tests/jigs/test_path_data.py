@@ -14,7 +14,7 @@ from hypothesis import strategies as st
 
 from jigs.outlines import OutlineError, signed_area_mm2
 from jigs.path_data import elliptical_arc, path_outline
-from layout.geometry import Arc, Cubic, Line, flatten
+from layout.curves import Arc, Cubic, Line, flatten
 
 modest = settings(max_examples=40, deadline=None)
 ROOT = Path(__file__).parents[2]

@@ -12,7 +12,8 @@ from jigs import seats
 from jigs.outlines import signed_area_mm2
 from jigs.seats import EDGE_TOLERANCE_MM, Blank, OutlineError, outline
 from jigs.spec import DSeat, OvalSeat, PathSeat, PolygonSeat, RectangleSeat, RoundSeat, ShieldSeat
-from layout.geometry import Affine, Line, ellipse_curve, flatten, mapped
+from layout.curves import Line, ellipse_curve, flatten, mapped
+from layout.geometry import Affine
 
 KINDS = {"round": RoundSeat, "oval": OvalSeat, "rectangle": RectangleSeat, "d": DSeat, "shield": ShieldSeat,
          "polygon": PolygonSeat, "path": PathSeat}  # fmt: skip

@@ -22,8 +22,8 @@ from jigs.setting_out import setting_out_pieces
 from jigs.statics import GUIDE
 from jigs.strips import strips
 from jigs.views import views
+from layout.curves import flatten
 from layout.drawing import Role
-from layout.geometry import flatten
 from layout.operations import bounds
 from tests.jigs.chair import CHAIR, chair, railed, whole
 from tests.jigs.conftest import DEMOS, LEG, clashes, demo, patch, stool, strokes, texts

@@ -10,7 +10,8 @@ from hypothesis import strategies as st
 
 from jigs.outlines import OutlineError
 from jigs.shield import LEAST_BACK, shield_outline
-from layout.geometry import Affine, Arc, Cubic, flatten, mapped, segment_box, union
+from layout.curves import Arc, Cubic, flatten, mapped, segment_box
+from layout.geometry import Affine, union
 
 modest = settings(max_examples=20, deadline=None)
 WIDTH, DEPTH, BACK, BOW, RADIUS = 430.0, 400.0, 300.0, 40.0, 30.0

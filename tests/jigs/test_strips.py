@@ -10,8 +10,8 @@ from shapely import LineString, Point
 
 from jigs.quantities import format_angle
 from jigs.strips import RUN_MM, WIDTH_MM, strip_pieces, strips
+from layout.curves import Arc
 from layout.drawing import Role
-from layout.geometry import Arc
 from layout.operations import bounds
 from tests.jigs.conftest import DEMOS, clashes, demo, fills, patch, polygon, stool, strokes, texts
 

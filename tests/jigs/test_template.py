@@ -14,8 +14,8 @@ from jigs.bores import sections
 from jigs.quantities import format_angle
 from jigs.template import MOST_PROOFS, SIGHTLINE_RUN_MM, edge_distances_mm, proofs
 from jigs.template import template as unlettered
+from layout.curves import Arc, flatten
 from layout.drawing import Role
-from layout.geometry import Arc, flatten
 from layout.labels import lettered
 from layout.operations import bounds
 from tests.jigs.conftest import DEMOS, FACES, clashes, demo, fills, patch, polygon, stool, strokes, texts

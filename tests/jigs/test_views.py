@@ -11,8 +11,8 @@ from shapely import MultiPoint, Polygon, points
 
 from jigs.bores import sections
 from jigs.views import HEIGHT_MM, SCALES, WIDTH_MM, views
+from layout.curves import Arc, flatten
 from layout.drawing import Role
-from layout.geometry import Arc, flatten
 from layout.operations import bounds
 from tests.jigs.conftest import DEMOS, demo, polygon, stool, strokes, texts
 

@@ -7,8 +7,9 @@ from itertools import combinations
 
 from shapely.geometry import Polygon
 
+from layout.curves import ellipse_curve
 from layout.drawing import Drawing, Role, Stroke, Text, gather
-from layout.geometry import Box, ellipse_curve
+from layout.geometry import Box
 from layout.operations import text_corners
 from layout.piece import Piece
 from layout.shapes import box_outline, cross, line, paragraph

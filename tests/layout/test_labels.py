@@ -8,8 +8,9 @@ import pytest
 from shapely import unary_union
 from shapely.geometry import Polygon, box
 
+from layout.curves import ellipse_curve
 from layout.drawing import Drawing, Role, Stroke, gather
-from layout.geometry import Affine, Box, ellipse_curve
+from layout.geometry import Affine, Box
 from layout.labels import EDGE_MM, LEADER_FROM_MM, LEADER_SHORT_MM, LINE_CLEAR_MM, block, lettered, lettered_off
 from layout.operations import bounds, polylines, text_corners, transform
 from layout.pages import compose

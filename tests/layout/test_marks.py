@@ -12,9 +12,10 @@ from shapely.geometry import box as rectangle
 from shapely.geometry.base import BaseGeometry
 from shapely.ops import unary_union
 
+from layout.curves import Arc, Line
 from layout.document import Mark
 from layout.drawing import Drawing, Role, Stroke, Text
-from layout.geometry import Affine, Arc, Box, Line
+from layout.geometry import Affine, Box
 from layout.marks import (
     APART_MM,
     REACH_MM,

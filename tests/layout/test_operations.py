@@ -9,8 +9,9 @@ import shapely
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from layout.curves import Arc, Cubic, Line, circle_curve, ellipse_curve, flatten
 from layout.drawing import Drawing, Fill, Role, Stroke, Text, gather
-from layout.geometry import Affine, Arc, Box, Cubic, Line, bearing_deg, circle_curve, ellipse_curve, flatten
+from layout.geometry import Affine, Box, bearing_deg
 from layout.lettering import FALL, RISE, text_width_mm
 from layout.operations import (
     FILL_TOLERANCE_MM,

@@ -20,11 +20,12 @@ import pypdfium2
 import pytest
 from reportlab.pdfbase.ttfonts import TTFontFace
 
-from layout import geometry, pdf, shapes
+from layout import curves, pdf, shapes
+from layout.curves import Arc, Cubic, Line
 from layout.document import Document, Page, Placement
 from layout.drawing import Drawing, Fill, Role, Stroke, Text, gather
 from layout.faces import face_path
-from layout.geometry import Affine, Arc, Box, Cubic, Line
+from layout.geometry import Affine, Box
 from layout.ink import INKS
 from layout.lettering import CAPITAL_OF_EM, text_width_mm
 from layout.operations import bounds, transform
@@ -74,7 +75,7 @@ def a_bit_of_everything() -> Drawing:
     return gather(
         [
             shapes.circle((60.0, 80.0), 41.3, Role.CUT),
-            Stroke(geometry.ellipse_curve((60.0, 80.0), 30.0, 12.5, 33.0), Role.HIDDEN, closed=True),
+            Stroke(curves.ellipse_curve((60.0, 80.0), 30.0, 12.5, 33.0), Role.HIDDEN, closed=True),
             shapes.arrow((20.0, 20.0), (110.0, 61.0), 4.0, Role.SET_OUT),
             shapes.line((60.0, 10.0), (60.0, 150.0), Role.CENTRE),
             shapes.line((5.0, 140.0), (115.0, 140.0), Role.FOLD),
@@ -271,7 +272,7 @@ def test_closed_strokes_are_closed_and_open_ones_are_not(see):
 
 
 def test_fills_are_solid():
-    drawing = gather([Fill(geometry.circle_curve((50.0, 50.0), 10.0), Role.SET_OUT)])
+    drawing = gather([Fill(curves.circle_curve((50.0, 50.0), 10.0), Role.SET_OUT)])
     dark = (pixels(shown(drawing), 100) < 128).sum() / (100 / 25.4) ** 2
     assert dark == pytest.approx(math.pi * 100, rel=0.01)
 

@@ -8,8 +8,9 @@ import shapely
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from layout.curves import Line, circle_curve, ellipse_curve, flatten
 from layout.drawing import Drawing, Fill, Role, Stroke, Text
-from layout.geometry import Box, Line, bearing_deg, circle_curve, ellipse_curve, flatten
+from layout.geometry import Box, bearing_deg
 from layout.lettering import text_width_mm
 from layout.operations import bounds, text_corners
 from layout.shapes import (
