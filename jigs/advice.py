@@ -1,6 +1,6 @@
 """What is said to the maker in words: the order of work for the faces and their mortises, and the cautions.
 
-Owns the wording. Imports `assembly`, `bores` and the template's wording; no drawing.
+Owns the wording. Imports `assembly`, `bores`, `names` and the template's wording; no drawing.
 """
 
 from __future__ import annotations
@@ -10,6 +10,7 @@ from collections.abc import Iterator, Sequence
 from jigs.assembly import Assembly, Face, other_face
 from jigs.bores import bored_mm, mouth_mm
 from jigs.legs import Leg
+from jigs.names import stems
 from jigs.template import bore_words
 
 # 29 CFR 1910.133(a): eye protection; OSHA 3157 (1999): clamped work, no gloves or loose clothing at a drill press.
@@ -176,23 +177,3 @@ def _gluing(assembly: Assembly) -> str:
         "Leave the legs long. Glue up on a level place in the order that was fitted dry and that “How the stretchers "
         f"go together” gives; {level}"
     )
-
-
-def stems(names: Sequence[str]) -> str:
-    """Names in a row, those that differ in their last word alone together: `front left, right; spindle 1 to 7`."""
-    ends: dict[tuple[str, bool], list[str]] = {}
-    for name in names:
-        stem, _, last = name.rpartition(" ")
-        ends.setdefault((stem or name, bool(stem)), []).append(last)
-    return "; ".join(f"{stem} {', '.join(_runs(lasts))}" if more else stem for (stem, more), lasts in ends.items())
-
-
-def _runs(lasts: Sequence[str]) -> Iterator[str]:
-    """Words as they are, but three or more whole numbers that follow each other as the first and the last."""
-    run: list[str] = []
-    for last in (*lasts, ""):
-        if run and last.isdecimal() and run[-1].isdecimal() and int(last) == int(run[-1]) + 1:
-            run.append(last)
-            continue
-        yield from [f"{run[0]} to {run[-1]}"] if len(run) > 2 else run
-        run = [last]

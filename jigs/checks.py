@@ -18,7 +18,7 @@ from jigs.bores import Section, least_web_mm, sections, web_mm, wood_above_mm
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.legs import Face, Leg
 from jigs.problems import Caution
-from jigs.quantities import MM_PER_INCH, format_angle
+from jigs.quantities import MM_PER_INCH, format_angle, format_weight
 from jigs.seats import Blank
 from layout.curves import mapped
 from layout.geometry import Affine
@@ -43,7 +43,6 @@ TIPPING_LOAD_N = 100.0
 UNEQUAL_MM = 1.0
 # A mortise or foot nearer than this to the middle of the seat belongs to neither end.
 ON_MIDDLE_MM = 1e-6
-_LB_KG = 0.45359237  # exact, 1 July 1959
 # Seat heights of the size marks 1 to 6: EN 1729-1.
 SIZE_MARKS_MM = (260.0, 310.0, 350.0, 380.0, 430.0, 460.0)
 
@@ -270,8 +269,7 @@ def _load(assembly: Assembly, load: EdgeLoad) -> str:
 
     newtons = load.load_n or 0.0
     kg = newtons / GRAVITY_M_S2
-    weight = f"{kg:.1f} kg" if assembly.furniture.units == "mm" else f"{kg / _LB_KG:.1f} lb"
-    return f"{newtons:.0f} N ({weight}) at the {load.at}"
+    return f"{newtons:.0f} N ({format_weight(kg, assembly.furniture.units, 1)}) at the {load.at}"
 
 
 def _tips_as_published(case: PublishedCase) -> Caution:

@@ -19,6 +19,8 @@ LONGEST_QUANTITY = 40
 LONGEST_LENGTH_MM = 1_000_000
 LARGEST_ANGLE_DEG = 100_000
 MM_PER_INCH = Fraction(254, 10)
+# The international avoirdupois pound, exact since 1 July 1959.
+KG_PER_LB = 0.45359237
 # A length this close to a 64th of an inch is one: far below what paper holds, far above rounding of doubles.
 SIXTY_FOURTH_TOLERANCE_MM = 1e-6
 
@@ -210,3 +212,8 @@ def format_length(mm: float, units: Units) -> str:
 def format_angle(deg: float, decimals: int = 1) -> str:
     """An angle in degrees as a sheet prints it, `13.5°`; never `-0.0°`."""
     return f"{_decimals(deg, decimals)}°"
+
+
+def format_weight(kg: float, units: Units, decimals: int = 2) -> str:
+    """A weight in the maker's units: kilograms beside millimetres, pounds beside inches."""
+    return f"{kg:.{decimals}f} kg" if units == "mm" else f"{kg / KG_PER_LB:.{decimals}f} lb"

@@ -1,16 +1,18 @@
 """The settings as numbers: the data of `angles --json` and the table of `angles`.
 
-Imports `assembly`, `checks`, `legs`, `quantities`; no drawing.
+Imports `assembly`, `checks`, `legs`, `listings`, `columns`, `names`, `quantities`; no drawing.
 """
 
 from __future__ import annotations
 
-from collections.abc import Callable
 from typing import Any
 
 from jigs.assembly import Assembly
 from jigs.checks import cautions
+from jigs.columns import sentences, text_table
 from jigs.legs import Lean, Leg
+from jigs.listings import assembly_notes, clock_reading, finished_sizes, standing_notes, tipping_loads, wood_to_cut
+from jigs.names import short_name
 from jigs.quantities import format_angle
 
 
@@ -23,6 +25,7 @@ def settings(assembly: Assembly) -> dict[str, Any]:
         "posts": [_leg_settings(assembly, post) for post in assembly.posts],
         "spindles": [_leg_settings(assembly, spindle) for spindle in assembly.spindles],
         "stretchers": [stretcher.data() for stretcher in assembly.stretchers],
+        "cut_list": _cut_list(assembly),
         "stability": _stability(assembly),
         "warnings": [{"code": c.code, "where": c.where, "text": c.text} for c in cautions(assembly)],
     }
@@ -32,6 +35,22 @@ def _cut(assembly: Assembly, leg: Leg) -> dict[str, float]:
     from jigs.cutting import blank_mm, foot_bevel_deg  # noqa: PLC0415 - the table does without
 
     return {"blank_mm": blank_mm(assembly, leg), "foot_bevel_deg": foot_bevel_deg(leg)}
+
+
+def _cut_list(assembly: Assembly) -> list[dict[str, Any]]:
+    from jigs.cutting import cut_rows  # noqa: PLC0415 - as above
+
+    return [
+        {
+            "name": row.name,
+            "count": row.count,
+            "length_mm": row.length_mm,
+            "section_mm": list(row.section_mm),
+            "board_feet": row.board_feet,
+            "weight_kg": row.weight_kg,
+        }
+        for row in cut_rows(assembly)
+    ]
 
 
 def _stability(assembly: Assembly) -> Any:
@@ -77,8 +96,15 @@ _COLUMNS = (
 )
 
 
+_SIGHTLINE = (
+    "Sightline: from the fore-and-aft line through the mortise toward the leg's own side; the complement is the same "
+    "line from the across line. Left and right are as seen from above with the front edge toward you, whichever face "
+    "you work on."
+)
+
+
 def table(assembly: Assembly) -> str:
-    """The settings in 80 columns: what to bore by, then how the legs stand."""
+    """The settings in 80 columns: what to bore by, how the legs stand, then the whole piece."""
     seat = assembly.furniture.seat
     lines = [assembly.furniture.name]
     for face in assembly.drilled_faces:
@@ -88,13 +114,8 @@ def table(assembly: Assembly) -> str:
         lines += ["", f"As they stand: the seat pitched {format_angle(seat.pitch)}, angles from plumb"]
         lines += _rows(assembly, [(leg, leg.floor) for leg in assembly.bored])
     lines += ["", "Where they come through and stand: x from the centre line, y from the front edge"]
-    lines += [*_points(assembly), *_stretchers(assembly)]
-    lines += [
-        "",
-        "Sightline: from the fore-and-aft line through the mortise toward the leg's own",
-        "side; the complement is the same line from the across line. Left and right are",
-        "as seen from above with the front edge toward you, whichever face you work on.",
-    ]
+    lines += [*_points(assembly), "", *sentences("", [_SIGHTLINE])]
+    lines += [*_stretchers(assembly), *_whole(assembly)]
     return "\n".join(lines) + "\n"
 
 
@@ -114,16 +135,6 @@ def _row(assembly: Assembly, leg: Leg, lean: Lean) -> str:
 
 def _named(name: str, width: int = _NAME_WIDTH) -> str:
     return short_name(name, lambda words: len(words) < width).ljust(width)
-
-
-def short_name(name: str, fits: Callable[[str], bool]) -> str:
-    """The name, cut with an ellipsis where it does not fit; a twin keeps its side, by which alone it is told apart."""
-    side = next((side for side in (" left", " right") if name.endswith(side)), "")
-    shown, kept = name, name.removesuffix(side)
-    while kept and not fits(shown):
-        kept = kept[:-1]
-        shown = kept.rstrip() + "…" + side
-    return shown
 
 
 def _points(assembly: Assembly) -> list[str]:
@@ -157,7 +168,19 @@ def _stretchers(assembly: Assembly) -> list[str]:
             bore, clock = format_angle(end.bore_deg), format_angle(end.clock_deg)
             height = assembly.length(end.height_mm)
             lines.append(f"  in {_named(end.host, 18)} bore {bore:>6}  clock {clock:>6}  height {height}")
-    return lines
+    return [*lines, "", *sentences("", list(clock_reading(assembly))[:-1])]
+
+
+def _whole(assembly: Assembly) -> list[str]:
+    """How the stretchers go together, the wood to cut, the sizes when it is done, how it stands."""
+    lines: list[str] = []
+    notes = assembly_notes(assembly)
+    if notes:
+        lines += ["", *sentences("How the stretchers go together", notes)]
+    for listing in (wood_to_cut(assembly), finished_sizes(assembly), tipping_loads(assembly)):
+        lines += ["", *text_table(listing)] if listing else []
+    said = standing_notes(assembly)
+    return [*lines, "", *sentences("", said)] if said else lines
 
 
 def _bare(assembly: Assembly, mm: float) -> str:

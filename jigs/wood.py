@@ -12,7 +12,7 @@ from dataclasses import dataclass
 from typing import NamedTuple
 
 from jigs.problems import shown
-from jigs.quantities import MM_PER_INCH
+from jigs.quantities import KG_PER_LB, MM_PER_INCH
 from jigs.spec_problems import nearest
 
 # A board foot is a board of 12 × 12 × 1 in, 144 cubic inches.
@@ -23,8 +23,8 @@ DENSITY_KG_M3 = 1120.0
 # A density that the maker gives, and what wood weighs: from balsa to lignum vitae with room to spare (memory).
 _DENSITY = re.compile(r"(\d{1,4}(?:\.\d{1,3})?) ?(kg/m|lb/ft)[3³]", re.ASCII)
 DENSITIES_KG_M3 = (80.0, 1400.0)
-# Exact by the definitions of the pound (1959) and the foot.
-KG_M3_PER_LB_FT3 = 0.45359237 / 0.3048**3
+# Exact by the definitions of the pound and the foot (12 in).
+KG_M3_PER_LB_FT3 = KG_PER_LB / (12 * float(MM_PER_INCH) / 1000) ** 3
 
 # What stands out above the seat, to be wedged and cut flush (practice).
 TENON_BEYOND_MM = 6.0

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pytest
 
-from jigs.advice import SAFETY, order_of_work, stems
+from jigs.advice import SAFETY, order_of_work
 from jigs.bores import bored_mm
 from tests.jigs.chair import CHAIR, chair, railed, whole
 from tests.jigs.conftest import DEMOS, demo, stool
@@ -113,18 +113,3 @@ def test_nothing_is_said_of_stretchers_where_there_are_none(name):
 
 def test_the_cautions_defer_to_the_tools_manual():
     assert any("manual of your tool" in words for words in SAFETY)
-
-
-@pytest.mark.parametrize(
-    ("names", "said"),
-    [
-        (["post"], "post"),
-        (["front left", "front right", "back left"], "front left, right; back left"),
-        (["spindle 1", "spindle 2"], "spindle 1, 2"),
-        (["spindle 1", "spindle 2", "spindle 3", "spindle 7"], "spindle 1 to 3, 7"),
-        (["a", "a 1"], "a; a 1"),
-        (["arm post left", "stay"], "arm post left; stay"),
-    ],
-)
-def test_names_that_differ_in_their_last_word_are_drawn_together(names, said):
-    assert stems(names) == said

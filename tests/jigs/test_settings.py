@@ -9,6 +9,7 @@ import re
 import pytest
 
 from jigs.checks import cautions
+from jigs.listings import assembly_notes, finished_sizes, standing_notes, tipping_loads, wood_to_cut
 from jigs.quantities import format_angle
 from jigs.settings import settings, table
 from tests.jigs.conftest import DEMOS, LEG, demo, stool
@@ -80,12 +81,19 @@ def assembly_named(name):
     return long_names(name.split()[1]) if name.startswith("long ") else demo(name)
 
 
+def to_bore_by(assembly):
+    """The lines of the table that are about what is bored into the seat."""
+    text = table(assembly)
+    return text[: text.index("Sightline: ")].splitlines()
+
+
 @pytest.mark.parametrize("name", EVERY)
 def test_the_table_fits_eighty_columns_and_no_two_cells_run_together(name):
     assembly = assembly_named(name)
     lines = table(assembly).splitlines()
     assert max(map(len, lines)) <= 80
     assert not any(line != line.rstrip() for line in lines)
+    lines = to_bore_by(assembly)
     rows = [line for line in lines if line.count("°") >= 5]
     pitched = assembly.furniture.seat.pitch != 0
     assert len(rows) == len(assembly.bored) * (2 if pitched else 1)
@@ -121,7 +129,7 @@ def test_the_table_says_what_the_maker_sets(name):
 
 def test_angles_as_the_legs_stand_are_told_beside_those_to_bore_by_on_a_pitched_seat():
     assembly = demo("harbour-chair")
-    lines = table(assembly).splitlines()
+    lines = to_bore_by(assembly)
     rows = [
         line.removeprefix("front left").split()[:3] for line in lines if line.startswith("front left") and "°" in line
     ]
@@ -133,8 +141,8 @@ def test_angles_as_the_legs_stand_are_told_beside_those_to_bore_by_on_a_pitched_
 
 
 def test_a_leg_that_stands_square_has_dashes_for_its_sightline():
-    text = table(stool([{"name": "post", "at": [0, 150], "rake": 0, "mortise": 25}]))
-    (row,) = [line for line in text.splitlines() if line.startswith("post") and "°" in line]
+    lines = to_bore_by(stool([{"name": "post", "at": [0, 150], "rake": 0, "mortise": 25}]))
+    (row,) = [line for line in lines if line.startswith("post") and "°" in line]
     assert row.split() == ["post", "0.0°", "0.0°", "0.0°", "-", "-", "90.0°", "405", "mm"]
 
 
@@ -150,3 +158,31 @@ def test_no_number_of_the_data_is_negative_nought_or_not_a_number():
         for number in numbers(settings(assembly)):
             assert math.isfinite(number)
             assert str(number) != "-0.0"
+
+
+@pytest.mark.parametrize("name", DEMOS)
+def test_the_table_tells_of_the_whole_piece_what_the_setting_out_sheet_tells(name):
+    assembly = demo(name)
+    text = table(assembly)
+    said = " ".join(text.split())
+    for listing in (wood_to_cut(assembly), finished_sizes(assembly), tipping_loads(assembly)):
+        assert listing.title in text
+        for row in listing.rows:
+            # A name that is broken has its numbers on its last line.
+            assert " ".join(" ".join(row).split()) in said
+    for note in (*assembly_notes(assembly), *standing_notes(assembly)):
+        assert note in said
+
+
+@pytest.mark.parametrize("name", DEMOS)
+def test_the_cut_list_of_the_data_has_every_part_once(name):
+    assembly = demo(name)
+    rows = settings(assembly)["cut_list"]
+    parts = [part.name for part in (*assembly.bored, *assembly.stretchers)]
+    assert sorted(name for row in rows for name in row["name"].split(", ")) == sorted([*parts, "seat"])
+    for row in rows:
+        assert row["count"] == len(row["name"].split(", "))
+        # A board foot is 144 cubic inches of 25.4 mm each way.
+        wide, thick = row["section_mm"]
+        feet = row["count"] * row["length_mm"] * wide * thick / (144 * 25.4**3)
+        assert row["board_feet"] == pytest.approx(feet, rel=1e-12)
