@@ -14,7 +14,7 @@ from dataclasses import dataclass
 from itertools import combinations
 from typing import TYPE_CHECKING
 
-from jigs.bores import least_web_mm, sections, web_mm, wood_above_mm
+from jigs.bores import bored_mm, least_web_mm, sections, slice_at, web_mm, wood_above_mm
 from jigs.directions import Seating
 from jigs.frames import SeatFrame
 from jigs.legs import Face, Leg
@@ -172,10 +172,11 @@ def _off_the_blank(assembly: Assembly) -> Iterator[Problem]:
             rule = f"leaves the blank by {assembly.length(-entry)}"
             yield Problem(_placed_by(leg), given, rule, "move it further in, or make the seat larger")
             continue
-        exit_face = other_face(leg.drilled)
         # A post that does so can still be bored and wedged in; `checks` tells of it.
-        if leg.kind == "leg" and sections(leg, exit_face) and not assembly.blank.holds(leg.on_face(exit_face)):
-            rule = f"comes out through the seat's side before it reaches the {exit_face}"
+        if leg.kind == "leg" and not assembly.blank.holds(slice_at(leg, bored_mm(leg)).centre):
+            blind = leg.mortise.depth is not None
+            end = "its full depth" if blind else f"the {other_face(leg.enters)}"
+            rule = f"comes out through the seat's side before it reaches {end}"
             yield Problem(_placed_by(leg), f"{leg.name}'s bore", rule, "move the mortise further in or lessen the lean")
 
 

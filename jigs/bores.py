@@ -96,6 +96,17 @@ def sections(leg: Leg, face: str) -> tuple[Section, ...]:
     return _outer(section(leg, face, reamed_radius, widening), bit, leg)
 
 
+def slice_at(leg: Leg, from_entry_mm: float) -> Section:
+    """The hole cut square across at a distance along its axis from the face that the part enters, seen square to the
+    seat.
+    """
+    share = from_entry_mm / leg.in_seat_mm
+    start, through = leg.on_face(leg.enters), leg.on_face("underside" if leg.enters == "top" else "top")
+    centre = (start[0] + share * (through[0] - start[0]), start[1] + share * (through[1] - start[1]))
+    radius = radius_mm(leg, from_entry_mm)
+    return Section(centre, radius * math.cos(math.radians(leg.seat.resultant_deg)), radius, leg.seat.bearing_deg)
+
+
 def _outer(reamed: Section, bit: Section, leg: Leg) -> tuple[Section, ...]:
     bearing = math.radians(bit.bearing_deg)
     shift = (reamed.centre[0] - bit.centre[0]) * math.cos(bearing) + (reamed.centre[1] - bit.centre[1]) * math.sin(

@@ -14,7 +14,7 @@ from itertools import combinations
 from typing import TYPE_CHECKING, NamedTuple
 
 from jigs.assembly import Assembly, other_face
-from jigs.bores import Section, least_web_mm, sections, web_mm, wood_above_mm
+from jigs.bores import Section, bored_mm, least_web_mm, sections, slice_at, web_mm, wood_above_mm
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.legs import Face, Leg
 from jigs.problems import Caution
@@ -26,8 +26,12 @@ from layout.geometry import Affine
 if TYPE_CHECKING:
     from jigs.statics import EdgeLoad, PublishedCase, Stability
 
+# A foot that stands out by no more than this is level with the seat's edge (practice).
+TRIP_MM = 0.5
 # Less wood than this between a mortise and the seat's edge is weak and may split off (practice).
 THIN_EDGE_MM = 12.0
+# Where a bore is looked at between its ends, on an outline that bends inward, as shares of its depth.
+BETWEEN_SHARES = (0.125, 0.25, 0.375, 0.5, 0.625, 0.75, 0.875)
 # Less wood along the grain between a mortise and the seat's edge than so many widths of the mortise is short grain,
 # which a wedge may shear out (practice).
 SHORT_GRAIN_WIDTHS = 1.0
@@ -123,13 +127,16 @@ def _trips(assembly: Assembly) -> Iterator[Finding]:
     """Feet that stand out beyond the seat, seen from above; keeping them inside is (practice)."""
     from_above = Affine(1.0, 0.0, 0.0, math.cos(math.radians(assembly.frame.pitch_deg)), 0.0, 0.0)
     seat = Blank(mapped(assembly.blank.curve, from_above))
+    asked = (spec for spec in assembly.furniture.legs if (spec.inside_side, spec.inside_end) != (None, None))
+    inside = {name for spec in asked for name in spec.names}
     for leg in assembly.legs:
         radius = leg.foot_diameter_mm / 2
         along = radius / math.cos(math.radians(leg.floor.resultant_deg))
         outside = -seat.ellipse_margin_mm(leg.foot_mm, along, radius, leg.floor.bearing_deg)
-        if outside > 0.0:
+        if outside > TRIP_MM:
             text = f"the foot stands {assembly.length(outside)} outside the seat and can trip a passer-by"
-            yield Finding(leg, "trip", f"{text}; lessen the lean or move the mortise in")
+            cure = "ask for more inside" if leg.name in inside else "lessen the lean"
+            yield Finding(leg, "trip", f"{text}; {cure} or move the mortise in")
 
 
 class Mouth(NamedTuple):
@@ -161,13 +168,30 @@ def _margin_mm(blank: Blank, mouth: Section) -> float:
 
 def _edges(assembly: Assembly, mouths: Sequence[Mouth]) -> Iterator[Finding]:
     for part, face, _, margin in mouths:
-        if margin < 0.0:
-            text = f"the bore breaks out of the seat's side at the {face}; move the mortise in or lessen the lean"
-            yield Finding(part, "breaks-edge", text, margin, face)
-        elif margin < THIN_EDGE_MM:
-            left = assembly.length(margin)
-            text = f"only {left} of wood between the mortise and the seat's edge on the {face}"
-            yield Finding(part, "thin-edge", f"{text}; {assembly.length(THIN_EDGE_MM)} or more is usual", margin, face)
+        yield from _edge(assembly, part, f"at the {face}", margin)
+    for part in assembly.bored:
+        where, margin = _inside(assembly.blank, part)
+        if margin < min((mouth.margin_mm for mouth in mouths if mouth.part is part), default=math.inf):
+            yield from _edge(assembly, part, where, margin)
+
+
+def _edge(assembly: Assembly, part: Leg, where: str, margin: float) -> Iterator[Finding]:
+    cure = "move the mortise in or lessen the lean"
+    if margin < 0.0:
+        yield Finding(part, "breaks-edge", f"the bore breaks out of the seat's side {where}; {cure}", margin, where)
+    elif margin < THIN_EDGE_MM:
+        text = f"only {assembly.length(margin)} of wood between the mortise and the seat's edge {where}"
+        text += f", and {assembly.length(THIN_EDGE_MM)} or more is usual; {cure}"
+        yield Finding(part, "thin-edge", text, margin, where)
+
+
+def _inside(blank: Blank, part: Leg) -> tuple[str, float]:
+    """The least wood to the side at a blind bore's end, and along any bore where the outline bends inward."""
+    found = [("at the bore's end", _margin_mm(blank, slice_at(part, bored_mm(part))))] if part.mortise.depth else []
+    if not blank.convex:
+        between = min(_margin_mm(blank, slice_at(part, share * bored_mm(part))) for share in BETWEEN_SHARES)
+        found.append(("between the bore's ends", between))
+    return min(found, key=lambda one: one[1], default=("", math.inf))
 
 
 def _short_grain(assembly: Assembly, mouths: Sequence[Mouth]) -> Iterator[Finding]:
@@ -193,8 +217,9 @@ def _floors(assembly: Assembly) -> Iterator[Finding]:
     for part in assembly.bored:
         above = wood_above_mm(part, assembly.thickness_mm)
         if above is not None and above < THIN_FLOOR_MM:
-            text = f"the mortise leaves {assembly.length(above)} of wood at the {other_face(part.enters)}"
-            yield Finding(part, "thin-floor", f"{text}; bore less deep", above)
+            text = f"the mortise leaves only {assembly.length(above)} of wood at the {other_face(part.enters)}"
+            usual = f"{assembly.length(THIN_FLOOR_MM)} or more is usual"
+            yield Finding(part, "thin-floor", f"{text}, and {usual}; bore less deep", above)
 
 
 def _steep(assembly: Assembly) -> Iterator[Finding]:
@@ -269,7 +294,7 @@ def _load(assembly: Assembly, load: EdgeLoad) -> str:
 
     newtons = load.load_n or 0.0
     kg = newtons / GRAVITY_M_S2
-    return f"{newtons:.0f} N ({format_weight(kg, assembly.furniture.units, 1)}) at the {load.at}"
+    return f"{math.floor(newtons)} N ({format_weight(kg, assembly.furniture.units, 1)}) at the {load.at}"
 
 
 def _tips_as_published(case: PublishedCase) -> Caution:

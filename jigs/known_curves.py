@@ -24,6 +24,7 @@ from jigs.legs import Lean, lean_of
 from jigs.quantities import Units
 from jigs.roots import Polynomial, plus, product, real_roots, value
 from jigs.seats import Blank
+from jigs.starts import foot_between
 from layout.geometry import Point, cos_sin
 
 # Legs are looked for up to this lean, from plumb and from the line square to the seat.
@@ -126,7 +127,7 @@ def measured(case: Case, name: str, slopes: Slopes) -> float:
             return foot[1]
         case "axis":
             return case.stance.below_underside_mm(slopes[1]) * math.sqrt(1.0 + slopes[0] ** 2 + slopes[1] ** 2)
-        case "equal_feet":
+        case "equal_from":
             one, other = case.between or (foot, foot)
             return math.dist(foot, one) - math.dist(foot, other)
     return case.edge(name).inside_mm(case.foot, slopes)
@@ -317,7 +318,5 @@ def _foot_line(case: Case, name: str, given_mm: float) -> Straight:
         return straight(side * height, 0.0, given_mm - side * x)
     if name == "foot_along":
         return straight(0.0, height, given_mm - y)
-    (px, py), (qx, qy) = case.between or ((-1.0, 0.0), (1.0, 0.0))
-    a, b = qx - px, qy - py
-    # (foot - half-way) · (q - p) = 0
-    return straight(height * a, height * b, ((px + qx) / 2 - x) * a + ((py + qy) / 2 - y) * b)
+    line = foot_between(*(case.between or ((-1.0, 0.0), (1.0, 0.0))))
+    return straight(height * line.a, height * line.b, line.c - line.a * x - line.b * y)

@@ -22,7 +22,7 @@ KNOWNS = (
     "axis",
 )
 # The foot's place between those of two neighbours; it comes with the two feet and not with a number.
-EQUAL_FEET = "equal_feet"
+EQUAL_FEET = "equal_from"
 ANGLES = frozenset({"splay", "rake", "resultant", "sightline"})
 
 # What each known settles. Two of one row settle nothing more than one.

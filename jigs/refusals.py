@@ -37,7 +37,7 @@ class Near:
 def too_few(case: Case, knowns: Mapping[str, float]) -> CannotSolve:
     """The refusal of a leg with a known too few."""
     if case.stance.side == 0:
-        who = "equal_feet does not say" if knowns else "nothing says"
+        who = f"{EQUAL_FEET} does not say" if knowns else "nothing says"
         return CannotSolve(f"{who} how far the leg on the centre line leans", f"give one of {_ON_CENTRE_LINE}")
     if not knowns:
         return CannotSolve(

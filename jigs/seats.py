@@ -179,6 +179,12 @@ class Blank:
         """The area within the true curve."""
         return signed_area_mm2(self.curve)
 
+    @cached_property
+    def convex(self) -> bool:
+        """Whether the outline nowhere bends inward, within EDGE_TOLERANCE_MM all round."""
+        polygon = self.polygon
+        return bool(polygon.convex_hull.area - polygon.area <= EDGE_TOLERANCE_MM * polygon.length)
+
     def holds(self, point: Point) -> bool:
         """Whether the point is on the blank or its edge, within EDGE_TOLERANCE_MM."""
         from shapely import Point as Spot  # noqa: PLC0415

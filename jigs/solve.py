@@ -175,9 +175,18 @@ def _note(case: Case, found: list[Slopes]) -> str:
     taken, *others = (_leaning(case, slopes) for slopes in found)
     tie = math.hypot(*found[1]) - math.hypot(*found[0]) <= SAME_SLOPE
     have = f"{'Two' if len(found) == 2 else len(found)} legs have this"
-    why = "of two that are as near to plumb, the one that leans further outward" if tie else "the one nearest to plumb"
+    why = f"of two that are as near to plumb, {_outward(case, found)}" if tie else "the one nearest to plumb"
     rest = "the other is" if len(others) == 1 else "the others are"
     return f"{have}. Taken is {why}: {taken}; {rest} {listed(others)}."
+
+
+def _outward(case: Case, found: list[Slopes]) -> str:
+    """Which of two that lean as much is taken: see `meeting`."""
+    taken, other = case.lean(found[0]), case.lean(found[1])
+    for angle, word in (("rake_deg", "rakes"), ("splay_deg", "splays")):
+        if getattr(taken, angle) > 0.0 >= getattr(other, angle):
+            return f"the one that {word} outward"
+    return "the one that leans further outward"
 
 
 def _leaning(case: Case, slopes: Slopes) -> str:

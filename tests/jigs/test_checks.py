@@ -12,9 +12,9 @@ from shapely import LineString, Point, Polygon, affinity
 
 from jigs.assembly import assemble
 from jigs.bores import Section
-from jigs.checks import SEAT_HEIGHTS, THIN_EDGE_MM, THIN_FLOOR_MM, THIN_WEB_MM, cautions
+from jigs.checks import SEAT_HEIGHTS, THIN_EDGE_MM, THIN_FLOOR_MM, THIN_WEB_MM, TRIP_MM, cautions
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
-from jigs.problems import Caution
+from jigs.problems import Caution, SpecError
 from jigs.spec import parse_spec
 from layout.curves import flatten
 from tests.jigs.conftest import BLAMELESS, DEMOS, LEG, _lines, demo, spec_text, stool
@@ -52,8 +52,8 @@ def test_a_foot_that_just_reaches_the_edge_is_told_and_one_that_stays_inside_is_
     def foot_at(x):
         return told([one(at=[x, 150], mortise=20, foot_diameter=60)])
 
-    assert foot_at(169.9) == []
-    assert [code for code, *_ in foot_at(170.1)] == ["trip"]
+    assert foot_at(170.0 + TRIP_MM - 0.1) == []
+    assert [code for code, *_ in foot_at(170.0 + TRIP_MM + 0.1)] == ["trip"]
 
 
 @pytest.mark.parametrize("pitch", [-10, 0, 8, 20])
@@ -84,13 +84,14 @@ def test_little_wood_between_a_mortise_and_the_edge_is_told_with_how_much():
         (
             "thin-edge",
             "legs[0]",
-            "front: only 10 mm of wood between the mortise and the seat's edge on the underside; "
-            "12 mm or more is usual",
+            "front: only 10 mm of wood between the mortise and the seat's edge at the underside, "
+            "and 12 mm or more is usual; move the mortise in or lessen the lean",
         ),
         (
             "thin-edge",
             "legs[0]",
-            "front: only 10 mm of wood between the mortise and the seat's edge on the top; 12 mm or more is usual",
+            "front: only 10 mm of wood between the mortise and the seat's edge at the top, "
+            "and 12 mm or more is usual; move the mortise in or lessen the lean",
         ),
     ]
     assert told([one(at=[200 - 10 - THIN_EDGE_MM - 0.1, 150], mortise=20)]) == []
@@ -102,7 +103,8 @@ def test_the_edge_is_looked_at_where_the_bore_comes_through_too():
         (
             "thin-edge",
             "legs[0]",
-            "front: only 9.6 mm of wood between the mortise and the seat's edge on the top; 12 mm or more is usual",
+            "front: only 9.6 mm of wood between the mortise and the seat's edge at the top, "
+            "and 12 mm or more is usual; move the mortise in or lessen the lean",
         )
     ]
 
@@ -172,14 +174,21 @@ def test_little_wood_left_above_a_blind_mortise_is_told():
         return told([one(at=[0, 100], mortise={"bit": 25, "depth": depth})])
 
     assert deep(45 - THIN_FLOOR_MM) == []
-    assert deep(40) == [("thin-floor", "legs[0]", "front: the mortise leaves 5 mm of wood at the top; bore less deep")]
+    assert deep(40) == [
+        (
+            "thin-floor",
+            "legs[0]",
+            "front: the mortise leaves only 5 mm of wood at the top, and 6 mm or more is usual; bore less deep",
+        )
+    ]
 
 
 def test_cautions_speak_in_the_makers_units():
     legs = [{**LEG, "mirror": False, "splay": 0, "rake": 0, "at": [6.25, 6], "mortise": 1}]
     found = told(legs, {"units": "in"}, width=14, depth=12, thickness=2, height=18)
     assert found[0][2] == (
-        "front: only 1/4 in of wood between the mortise and the seat's edge on the underside; 15/32 in or more is usual"
+        "front: only 1/4 in of wood between the mortise and the seat's edge at the underside, "
+        "and 15/32 in or more is usual; move the mortise in or lessen the lean"
     )
 
 
@@ -215,9 +224,9 @@ ROW = {
 }
 
 
-def topped(*tables):
+def topped(*tables, **seat):
     """What is told of a stool with more tables: pairs of a table's title and what is in it."""
-    text = spec_text()
+    text = spec_text(**seat)
     text += "".join(f"\n[[{title}]]\n" + "\n".join(_lines(table)) for title, table in tables)
     assembly = assemble(parse_spec(text.encode(), "chair.toml"), "chair.toml")
     return [(caution.code, caution.where, caution.text) for caution in cautions(assembly)]
@@ -231,8 +240,8 @@ def test_a_post_near_the_edge_is_told_from_the_face_that_it_enters():
     found = topped(("posts", {**POST, "at": [80, 280], "splay": 0, "rake": 0}))
     assert [(code, where) for code, where, _ in found] == [("thin-edge", "posts[0]")] * 2
     assert found[0][2] == (
-        "post left, post right: only 10.5 mm of wood between the mortise and the seat's edge on the top; "
-        "12 mm or more is usual"
+        "post left, post right: only 10.5 mm of wood between the mortise and the seat's edge at the top, "
+        "and 12 mm or more is usual; move the mortise in or lessen the lean"
     )
 
 
@@ -251,7 +260,8 @@ def test_a_blind_mortise_of_a_post_is_measured_to_the_underside():
         (
             "thin-floor",
             "posts[0]",
-            "post left, post right: the mortise leaves 4 mm of wood at the underside; bore less deep",
+            "post left, post right: the mortise leaves only 4 mm of wood at the underside, "
+            "and 6 mm or more is usual; bore less deep",
         )
     ]
 
@@ -471,3 +481,44 @@ def test_a_code_is_one_word_for_other_programs(name):
 
 def test_the_chandlers_table_is_blameless():
     assert cautions(demo("chandlers-table")) == ()
+
+
+def of_code(found, code):
+    return [text for this, _, text in found if this == code]
+
+
+@pytest.mark.parametrize(("at", "splay"), [(168, 25), (163, 25), (165, 20)])
+def test_the_wood_at_the_end_of_a_blind_bore_is_measured_to_the_seats_side(at, splay):
+    """A post leans inward as it rises, so that its bore runs out to the side below."""
+    post = {**POST, "at": [at, 150], "end": "back", "splay": -splay, "rake": 0, "mortise": {"bit": 22, "depth": 38}}
+    found = topped(("posts", post), shape="rectangle", width=400, depth=300)
+    (text,) = [words for words in of_code(found, "thin-edge") if "bore's end" in words]
+    # The end of the axis, and the flat end's edge beyond it, square to the axis.
+    lean = math.radians(splay)
+    wood = 200 - at - 38 * math.sin(lean) - 11 * math.cos(lean)
+    assert 5.0 < wood < THIN_EDGE_MM
+    assert text.startswith(f"post left, post right: only {round(wood, 1):g} mm of wood between the mortise and the seat's edge")
+
+
+def test_a_blind_bore_that_leaves_through_the_side_is_told_of_a_post_and_refused_of_a_leg():
+    mortise = {"bit": 22, "depth": 40}
+    post = {**POST, "at": [178, 150], "end": "back", "splay": -25, "rake": 0, "mortise": mortise}
+    found = topped(("posts", post), shape="rectangle", width=400, depth=300)
+    assert of_code(found, "breaks-edge") == [
+        "post left, post right: the bore breaks out of the seat's side at the bore's end; "
+        "move the mortise in or lessen the lean"
+    ]
+    legs = [leg(at=[185, 150], end="back", splay=-40, rake=0, mortise={"bit": 20, "depth": 40})]
+    with pytest.raises(SpecError, match="front left's bore comes out through the seat's side before it reaches its"):
+        stool(legs, shape="rectangle", width=400, depth=300, corner_radius=None)
+
+
+def test_a_bore_that_passes_under_a_notch_is_told_where_neither_face_shows_it():
+    """Straight across below the tip of a notch in the front edge: clear of it on both faces, not between them."""
+    notched = [[-200, 0], [-6, 0], [0, 40], [6, 0], [200, 0], [200, 300], [-200, 300]]
+    bored = leg(mirror=False, at=[13, 52], end="front", splay=30, rake=0, mortise=16)
+    seat = {"shape": "polygon", "points": notched, "width": None, "depth": None, "thickness": 45}
+    found = told([bored], **seat)
+    (text,) = [words for words in of_code(found, "thin-edge") if "between the bore's ends" in words]
+    # The bit's radius of 8 mm, 12 mm behind the tip.
+    assert text.startswith("front: only 4 mm of wood")

@@ -353,4 +353,4 @@ def test_legs_that_cannot_be_solved_are_told_together():
 def test_of_two_legs_that_have_what_was_said_the_other_is_told():
     made = furnished([{**LEG, "resultant": 14, "splay": 9}], **OVAL, pitch=4)
     assert [(note.code, note.where) for note in made.notes] == [("two-ways", "legs[0]")] * 2
-    assert all("nearest to plumb" in note.text or "further outward" in note.text for note in made.notes)
+    assert all("nearest to plumb" in note.text or "rakes outward" in note.text for note in made.notes)

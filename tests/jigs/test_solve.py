@@ -428,7 +428,7 @@ def test_two_legs_as_near_to_plumb_are_told_and_the_outward_one_is_taken():
     assert solution.others == 1
     assert lean_of(solution.direction, 1, -1).rake_deg == pytest.approx(rake, abs=1e-12)
     assert solution.note == (
-        "Two legs have this. Taken is of two that are as near to plumb, the one that leans further outward: "
+        "Two legs have this. Taken is of two that are as near to plumb, the one that rakes outward: "
         "splay 12°, rake 9.266°; the other is splay 12°, rake -9.266°."
     )
 
@@ -782,18 +782,18 @@ def test_a_foot_stands_equally_far_from_its_neighbours():
 
 def test_equal_feet_alone_ask_for_one_known_more():
     rule, cure = refusal(RIGHT_FRONT, {}, between=((-160.0, 10.0), (150.0, 320.0)))
-    assert rule == "equal_feet alone says the foot's place between its neighbours"
+    assert rule == "equal_from alone says the foot's place between its neighbours"
     assert cure.startswith("add one of splay, rake, ")
 
 
 def test_a_leg_between_twins_is_told_that_equal_feet_do_not_say_how_far():
     rule, _ = refusal(BACK_CENTRE, {}, between=((-160.0, 0.0), (160.0, 0.0)))
-    assert rule == "equal_feet does not say how far the leg on the centre line leans"
+    assert rule == "equal_from does not say how far the leg on the centre line leans"
 
 
 def test_equal_feet_out_of_reach_of_a_length_are_told():
     rule, cure = refusal(RIGHT_FRONT, {"axis": 409.0}, between=((-160.0, -200.0), (150.0, -90.0)))
-    assert rule.startswith("no leg has both equal_feet and axis 409 mm: with equal_feet the nearest axis is ")
+    assert rule.startswith("no leg has both equal_from and axis 409 mm: with equal_from the nearest axis is ")
     assert cure.startswith("the nearest that would do is axis ")
 
 
