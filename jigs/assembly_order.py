@@ -13,7 +13,7 @@ from itertools import combinations
 
 from jigs.frames import Vector, dot, further, minus, unit
 from jigs.quantities import Units, format_angle, format_length
-from jigs.stretchers import Member, Stretcher, cross
+from jigs.stretchers import Member, Stretcher, StretcherEnd, cross
 
 # What two legs and their stretcher give without harm when they are sprung together dry (practice).
 SPRING_MM = 3.0
@@ -27,24 +27,47 @@ def assembly_note(
 ) -> list[str]:
     """How the stretchers and their legs can be put together, in sentences for the sheet.
 
-    First which joints can be pushed home together, then for each stretcher between two legs what happens to it while
-    both are driven `drive_mm` into the seat along their own axes.
+    First which joints can be pushed home together, then for each stretcher what happens to its mortises while all legs
+    are driven `drive_mm` into the seat along their own axes: the seat, too, closes a ring.
     """
     uprights = {member.name: member for member in members if member.upright}
-    notes = _order(stretchers, tuple(uprights), units)
-    for stretcher in stretchers:
-        legs = [uprights[end.host] for end in stretcher.ends if end.host in uprights]
-        if len(legs) == 2:
-            notes.append(_driven(stretcher, (legs[0], legs[1]), drive_mm, units))
-    return notes
+    ways = joint_ways(stretchers, uprights)
+    driven = (_driven(stretcher, uprights, ways[stretcher.name], drive_mm, units) for stretcher in stretchers)
+    return [*_order(stretchers, tuple(uprights), units), *driven]
 
 
-def change_on_driving_mm(stretcher: Stretcher, legs: tuple[Member, Member], drive_mm: float) -> float:
+Ways = tuple[Vector, Vector]
+
+
+def joint_ways(stretchers: Sequence[Stretcher], uprights: Mapping[str, Member]) -> dict[str, Ways]:
+    """How each stretcher's two joints move for each mm that all legs are drawn out of the seat along their own axes.
+
+    A joint in another stretcher moves as that one's ends do, each by its share.
+    """
+    named = {stretcher.name: stretcher for stretcher in stretchers}
+    found: dict[str, Ways] = {}
+
+    def way(end: StretcherEnd) -> Vector:
+        if end.host in uprights:
+            return uprights[end.host].along
+        host = named[end.host]
+        (first, second), share = ways(host), end.along_host_mm / host.between_axes_mm
+        return further(first, minus(second, first), share)
+
+    def ways(stretcher: Stretcher) -> Ways:
+        if stretcher.name not in found:
+            found[stretcher.name] = (way(stretcher.ends[0]), way(stretcher.ends[1]))
+        return found[stretcher.name]
+
+    return {stretcher.name: ways(stretcher) for stretcher in stretchers}
+
+
+def change_on_driving_mm(stretcher: Stretcher, ways: Ways, drive_mm: float) -> float:
     """How much further apart (negative: nearer) the two mortises of a stretcher get than they are at home, at most,
-    while both legs are drawn `drive_mm` out of the seat along their own axes, or driven in.
+    while the legs are drawn `drive_mm` out of the seat, or driven in; `ways` as `joint_ways` gives them.
     """
     home = minus(stretcher.ends[1].axis_point_mm, stretcher.ends[0].axis_point_mm)
-    drift = minus(legs[1].along, legs[0].along)
+    drift = minus(ways[1], ways[0])
     speed = dot(drift, drift)
     # The distance has one least value on the way, and is greatest at one of the ends.
     least = -dot(home, drift) / speed if speed > 0.0 else 0.0
@@ -53,20 +76,21 @@ def change_on_driving_mm(stretcher: Stretcher, legs: tuple[Member, Member], driv
     return max(changes, key=abs)
 
 
-def _driven(stretcher: Stretcher, legs: tuple[Member, Member], drive_mm: float, units: Units) -> str:
-    change = change_on_driving_mm(stretcher, legs, drive_mm)
+def _driven(stretcher: Stretcher, legs: Mapping[str, Member], ways: Ways, drive_mm: float, units: Units) -> str:
+    change = change_on_driving_mm(stretcher, ways, drive_mm)
     by, out = format_length(abs(change), units), format_length(drive_mm, units)
-    names = f"{legs[0].name} and {legs[1].name}"
+    between = [end.host for end in stretcher.ends]
+    names, both = (_and(between), "both") if all(host in legs for host in between) else ("the legs", "all")
     head = f"{stretcher.name}: with {names} {out} short of home in the seat its mortises are"
     if abs(change) <= SPRING_MM:
         apart = f"{by} {'further apart' if change > 0.0 else 'nearer together'} than at home"
-        return f"{head} {apart}: legs give that much, so fit it first and drive both together."
+        return f"{head} {apart}: legs give that much, so fit it first and drive {both} together."
     if change < 0.0:
-        cure = "it holds the legs too far apart: spread them by that as they enter the seat, and drive both together"
+        cure = f"it holds the legs too far apart: spread them by that as they enter the seat, and drive {both} together"
         return f"{head} {by} nearer together than at home: {cure}."
     if change < 2 * stretcher.tenon_mm:
-        cure = "start its two tenons that much, in all, short of their shoulders, and let them close as both are driven"
-        return f"{head} {by} further apart than at home: {cure}."
+        cure = f"start its two tenons that much, in all, short of their shoulders, and let them close as {both} are"
+        return f"{head} {by} further apart than at home: {cure} driven."
     tenons = f"both tenons of {format_length(stretcher.tenon_mm, units)}"
     return f"{head} {by} further apart than at home, more than {tenons} bridge: fit it when the legs are nearly home."
 
@@ -106,7 +130,10 @@ def _order(stretchers: Sequence[Stretcher], legs: Sequence[str], units: Units) -
             closed = {j.index for j in held if not any(set(j.parts) <= group for group in groups)}
             notes.append(_closing([stretchers[k] for k in sorted(closed)], groups, legs, angle, units))
             waiting += [_in_rings([j for j in held if set(j.parts) <= group]) for group in groups]
-    alone = "The stretchers and their legs make no closed ring: fit them one after another, in any order."
+    alone = (
+        "The stretchers and their legs make no closed ring: fit them one after another, in any order. The seat closes "
+        "the rings as the legs are driven."
+    )
     return notes[::-1] or [alone]
 
 

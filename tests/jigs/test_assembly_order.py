@@ -9,7 +9,8 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
-from jigs.assembly_order import PARALLEL_DEG, SPRING_MM, assembly_note, between_deg, change_on_driving_mm
+from jigs.assembly_order import PARALLEL_DEG, SPRING_MM, assembly_note, between_deg, change_on_driving_mm, joint_ways
+from jigs.quantities import format_length
 from jigs.stretchers import place
 from tests.jigs.bars import BOX, H_FORM, SIDES, X_FORM, bar, chair, leg, placed, plumb_chair
 
@@ -19,6 +20,10 @@ LEVEL_BOX = [replace(spec, heights_mm=(z, z)) for spec, z in zip(BOX, (110.0, 11
 def rings(specs, members):
     """The sentences on what closes rings, without those on driving legs into the seat."""
     return [note for note in assembly_note(place(specs, members), members, 40.0) if "short of home" not in note]
+
+
+def ways_of(legs):
+    return tuple(leg.along for leg in legs)
 
 
 def drawn(stretcher, legs, drive):
@@ -39,7 +44,7 @@ def test_the_change_on_driving_is_the_widest_of_all_the_steps(splay, rake, drive
     for stretcher, pair in zip(place(specs, legs), ((legs[0], legs[3]), (legs[0], legs[2])), strict=True):
         changes = drawn(stretcher, pair, drive)
         widest = changes[np.argmax(np.abs(changes))]
-        assert abs(change_on_driving_mm(stretcher, pair, drive)) == pytest.approx(abs(widest), abs=1e-4)
+        assert abs(change_on_driving_mm(stretcher, ways_of(pair), drive)) == pytest.approx(abs(widest), abs=1e-4)
 
 
 def test_the_change_is_exact_for_legs_that_splay_in_one_plane():
@@ -47,7 +52,7 @@ def test_the_change_is_exact_for_legs_that_splay_in_one_plane():
     (stretcher,) = place([bar("a", "one", "two", heights=(100.0, 100.0))], legs)
     # Each leg carries its mortise outward by 40 sin 15°.
     outward = 80.0 * math.sin(math.radians(15.0))
-    assert change_on_driving_mm(stretcher, (legs[0], legs[1]), 40.0) == pytest.approx(outward)
+    assert change_on_driving_mm(stretcher, ways_of(legs), 40.0) == pytest.approx(outward)
 
 
 def test_legs_that_come_nearest_on_the_way_are_told_by_how_much():
@@ -57,11 +62,10 @@ def test_legs_that_come_nearest_on_the_way_are_told_by_how_much():
     (stretcher,) = place([bar("a", "one", "two", fractions=(0.9, 0.9))], legs)
     at_home = stretcher.ends[1].axis_point_mm[0] - stretcher.ends[0].axis_point_mm[0]
     drive = abs(at_home) / math.sin(math.radians(20.0))
-    assert change_on_driving_mm(stretcher, (legs[0], legs[1]), drive) == pytest.approx(
+    assert change_on_driving_mm(stretcher, ways_of(legs), drive) == pytest.approx(
         drawn(stretcher, legs, drive).max(), abs=1e-3
     )
-    crossing = (legs[1], legs[0])
-    assert change_on_driving_mm(stretcher, crossing, 0.0) == 0.0
+    assert change_on_driving_mm(stretcher, ways_of(legs[::-1]), 0.0) == 0.0
 
 
 @pytest.mark.parametrize(
@@ -81,14 +85,35 @@ def test_what_driving_does_to_a_stretcher_is_said_in_numbers(splay, words):
     assert note.startswith(f"a: with one and two 40 mm short of home in the seat its mortises are {words}")
 
 
-def test_a_medial_stretcher_has_no_legs_to_be_driven():
+def test_a_medial_stretcher_is_told_what_the_seat_does_to_it_as_all_legs_are_driven():
     stretchers, legs = placed("H")
-    driven = [note.partition(":")[0] for note in assembly_note(stretchers, legs, 40.0) if "short of home" in note]
-    assert driven == ["left", "right"]
+    notes = [note for note in assembly_note(stretchers, legs, 40.0) if "short of home" in note]
+    assert [note.partition(":")[0] for note in notes] == ["left", "right", "medial"]
+    # Where each leg's point is when it is drawn out by 40 mm, and the medial's points at their shares between these.
+    named = {leg.name: leg for leg in legs}
+    by_name = {stretcher.name: stretcher for stretcher in stretchers}
+
+    def place_of(end, drive):
+        if end.host in named:
+            return np.array(end.axis_point_mm) + drive * np.array(named[end.host].along)
+        host = by_name[end.host]
+        first, second = (place_of(one, drive) for one in host.ends)
+        at_home = [np.array(one.axis_point_mm) for one in host.ends]
+        share = np.linalg.norm(end.axis_point_mm - at_home[0]) / np.linalg.norm(at_home[1] - at_home[0])
+        return first + share * (second - first)
+
+    medial = by_name["medial"]
+    apart = [math.dist(*(place_of(end, drive) for end in medial.ends)) for drive in (0.0, 40.0)]
+    assert change_on_driving_mm(medial, joint_ways(stretchers, named)["medial"], 40.0) == pytest.approx(
+        apart[1] - apart[0], abs=1e-9
+    )
+    change = format_length(abs(apart[1] - apart[0]), "mm")
+    assert notes[2].startswith(f"medial: with the legs 40 mm short of home in the seat its mortises are {change} ")
 
 
 def test_an_h_and_an_x_of_halves_are_fitted_one_after_another():
-    alone = "The stretchers and their legs make no closed ring: fit them one after another, in any order."
+    alone = "The stretchers and their legs make no closed ring: fit them one after another, in any order. "
+    alone += "The seat closes the rings as the legs are driven."
     assert rings(H_FORM, chair()) == [alone]
     assert rings(X_FORM, chair()) == [alone]
 

@@ -497,7 +497,9 @@ def test_the_wood_at_the_end_of_a_blind_bore_is_measured_to_the_seats_side(at, s
     lean = math.radians(splay)
     wood = 200 - at - 38 * math.sin(lean) - 11 * math.cos(lean)
     assert 5.0 < wood < THIN_EDGE_MM
-    assert text.startswith(f"post left, post right: only {round(wood, 1):g} mm of wood between the mortise and the seat's edge")
+    assert text.startswith(
+        f"post left, post right: only {round(wood, 1):g} mm of wood between the mortise and the seat's edge"
+    )
 
 
 def test_a_blind_bore_that_leaves_through_the_side_is_told_of_a_post_and_refused_of_a_leg():
