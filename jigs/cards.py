@@ -17,10 +17,11 @@ from typing import NamedTuple
 
 from jigs.assembly import Assembly, Face
 from jigs.legs import Leg
+from jigs.names import stems
 from jigs.quantities import format_angle
 from layout.drawing import Drawing, Role, Text, gather
 from layout.geometry import Point, along
-from layout.lettering import shortened, wrap
+from layout.lettering import shortened, text_width_mm, wrap
 from layout.piece import Piece
 from layout.shapes import arrow, arrow_head, line, paragraph, polyline
 
@@ -214,7 +215,7 @@ def _wall_words(card: Card, shape: Net, angle: str) -> Iterator[Drawing]:
     what = {"resultant": "lean of the bit", "splay": "splay of the bit", "rake": "rake of the bit"}[card.kind]
     block, y = paragraph((left, y - 4.0), what if card.toward else "square to the face", 3.5, width, bold=True)
     yield block
-    names, y = paragraph((left, y - 2.0), shortened(", ".join(card.legs), 2.7 * width, 2.5), 2.5, width)
+    names, y = paragraph((left, y - 2.0), names_within(card.legs, 2.7 * width, 2.5), 2.5, width)
     yield names
     if card.within_deg > SAME_ANGLE_DEG:
         block, y = paragraph((left, y - 1.0), f"all within {format_angle(card.within_deg, 2)}", 2.5, width)
@@ -229,6 +230,13 @@ def _wall_words(card: Card, shape: Net, angle: str) -> Iterator[Drawing]:
     if card.toward:
         yield _foot_arrow(card, shape)
     yield _buttress_words()
+
+
+def names_within(names: Sequence[str], width_mm: float, height_mm: float, bold: bool = False) -> str:
+    """Names in a row, in full where there is room, else drawn together, and cut only where even that is too long."""
+    full = ", ".join(names)
+    words = full if text_width_mm(full, height_mm, bold) <= width_mm else stems(names)
+    return shortened(words, width_mm, height_mm, bold)
 
 
 def _buttress_words() -> Drawing:
@@ -254,7 +262,7 @@ def _bevel_piece(assembly: Assembly, number: int, resultant_deg: float, legs: li
     corner = (0.0, 0.0)
     blade = along(corner, bevel, BLADE_MM)
     frame = ((-8.0, -14.0), (BASE_MM + 6.0, -14.0), (BASE_MM + 6.0, BLADE_MM + 6.0), (-8.0, BLADE_MM + 6.0))
-    names = shortened(", ".join(leg.name for leg in legs), 4.5 * 58.0, 2.5)
+    names = names_within([leg.name for leg in legs], 4.5 * 58.0, 2.5)
     drawing = gather(
         [
             polyline(frame, Role.CUT, closed=True),

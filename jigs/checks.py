@@ -13,8 +13,8 @@ from functools import cache
 from itertools import combinations
 from typing import TYPE_CHECKING, NamedTuple
 
-from jigs.assembly import Assembly, other_face
-from jigs.bores import Section, bored_mm, least_web_mm, sections, slice_at, web_mm, wood_above_mm
+from jigs.assembly import Assembly, as_bar, other_face
+from jigs.bores import Section, bored_mm, least_web_mm, mouth_mm, sections, slice_at, web_mm, wood_above_mm
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.legs import Face, Leg
 from jigs.problems import Caution
@@ -39,6 +39,8 @@ SHORT_GRAIN_WIDTHS = 1.0
 THIN_WEB_MM = 10.0
 # Less wood than this left beyond a blind mortise shows or breaks through when the seat is hollowed (practice).
 THIN_FLOOR_MM = 6.0
+# A mouth wider than its leg by more than this is not filled: far below what a hand fits, far above rounding.
+LOOSE_MM = 0.01
 # A bit that leans further than this from square skates before it bites (practice).
 STEEP_DEG = 25.0
 # A piece that a lighter load than this on the seat's edge lifts is tipped by the hand of someone who rises (practice).
@@ -93,7 +95,7 @@ def cautions(assembly: Assembly) -> tuple[Caution, ...]:
     """
     mouths = tuple(_mouths(assembly))
     found = [*_trips(assembly), *_edges(assembly, mouths), *_short_grain(assembly, mouths), *_floors(assembly)]
-    found += [*_steep(assembly), *_crossed(assembly), *_webs(assembly)]
+    found += [*_loose(assembly), *_steep(assembly), *_crossed(assembly), *_webs(assembly)]
     whole = (*_stands(assembly), *_seat_height(assembly), *_unequal(assembly))
     return (*_merged(found), *_stretchers(assembly), *whole, *_notes(assembly))
 
@@ -222,6 +224,16 @@ def _floors(assembly: Assembly) -> Iterator[Finding]:
             yield Finding(part, "thin-floor", f"{text}, and {usual}; bore less deep", above)
 
 
+def _loose(assembly: Assembly) -> Iterator[Finding]:
+    """Mouths wider than what is to fill them."""
+    for part in assembly.bored:
+        mouth = mouth_mm(part)
+        if mouth > part.diameter_mm + LOOSE_MM:
+            wide, thick = assembly.length(mouth), assembly.length(part.diameter_mm)
+            text = f"the mortise is {wide} wide at its mouth, and the {part.kind} {thick}"
+            yield Finding(part, "loose", f"{text}; ream less wide or leave the {part.kind} thicker")
+
+
 def _steep(assembly: Assembly) -> Iterator[Finding]:
     for part in assembly.bored:
         lean = part.drill.resultant_deg
@@ -256,9 +268,13 @@ def _webs(assembly: Assembly) -> Iterator[Finding]:
 def _stretchers(assembly: Assembly) -> tuple[Caution, ...]:
     if not assembly.stretchers:
         return ()
-    from jigs.joinery import cautions as of_stretchers  # noqa: PLC0415 - few pieces have stretchers
+    from jigs.joinery import Slab  # noqa: PLC0415 - few pieces have stretchers
+    from jigs.joinery import cautions as of_stretchers  # noqa: PLC0415
 
-    return of_stretchers(assembly.stretchers, assembly.bars, assembly.furniture.units)
+    frame = assembly.frame
+    spindles = tuple(as_bar(spindle, frame, assembly.thickness_mm) for spindle in assembly.spindles)
+    seat = Slab(frame.to_floor((0.0, 0.0, 0.0)), frame.turn_to_floor((0.0, 0.0, 1.0)), assembly.thickness_mm)
+    return of_stretchers(assembly.stretchers, assembly.bars, assembly.furniture.units, spindles, seat)
 
 
 # The whole piece

@@ -1,7 +1,7 @@
-"""Whether stretchers fit: tenons that come through or meet, boring that is too steep, stretchers that run into others.
+"""Whether stretchers fit: tenons that come through or meet, boring that is too steep, what they run into.
 
-Owns the cautions about stretchers. Imports `stretchers`, `frames`, `problems`, `quantities`; no drawing. Floor frame,
-mm and degrees, as in `stretchers`.
+Owns the cautions about stretchers. Imports `stretchers`, `frames`, `names`, `problems`, `quantities`; no drawing. Floor
+frame, mm and degrees, as in `stretchers`.
 """
 
 from __future__ import annotations
@@ -10,11 +10,13 @@ import math
 from collections.abc import Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from itertools import combinations
+from typing import NamedTuple
 
 import numpy as np
 from numpy.typing import NDArray
 
-from jigs.frames import Vector, further, minus, nearest_on_segments, unit
+from jigs.frames import Vector, dot, further, minus, nearest_on_segments, unit
+from jigs.names import stems
 from jigs.problems import Caution
 from jigs.quantities import Units, format_angle, format_length
 from jigs.stretchers import Member, Stretcher, StretcherEnd
@@ -29,11 +31,31 @@ THROUGH_TOLERANCE_MM = 0.01
 MEET_TOLERANCE_MM = 0.01
 
 
-def cautions(stretchers: Sequence[Stretcher], members: Sequence[Member], units: Units = "mm") -> tuple[Caution, ...]:
-    """What is unwise about stretchers that can be made, in their order."""
+class Slab(NamedTuple):
+    """The seat as stretchers may run into it: a point of its top face, the direction square to it and up, in mm."""
+
+    top: Vector
+    normal: Vector
+    thickness_mm: float
+
+
+def cautions(
+    stretchers: Sequence[Stretcher],
+    members: Sequence[Member],
+    units: Units = "mm",
+    others: Sequence[Member] = (),
+    seat: Slab | None = None,
+) -> tuple[Caution, ...]:
+    """What is unwise about stretchers that can be made, in their order.
+
+    `others` are bars that none is tenoned into and that stand in the way all the same, such as spindles.
+    """
     hosts = _hosts(stretchers, members)
-    found = [*_steep(stretchers), *_through(stretchers, hosts, units)]
+    found = [*_steep(stretchers), *_wide(stretchers, hosts, units), *_through(stretchers, hosts, units)]
     found += [*_meeting(stretchers, units), *_crossing(stretchers, units)]
+    found += [*_blocked(stretchers, (*members, *others), units), *_on_the_floor(stretchers, units)]
+    if seat is not None:
+        found += _in_the_seat(stretchers, seat, units)
     return tuple(caution for _, caution in sorted(found, key=lambda pair: pair[0]))
 
 
@@ -57,6 +79,16 @@ def _steep(stretchers: Sequence[Stretcher]) -> Iterator[_Finding]:
                 text = f"{stretcher.name}: the bit leans {format_angle(lean)} from square to {end.host} and will skate"
                 cure = "start the hole square, or bring the joints nearer to one height"
                 yield _finding(index, "stretcher-steep", f"{text}; {cure}")
+
+
+def _wide(stretchers: Sequence[Stretcher], hosts: Mapping[str, Member], units: Units) -> Iterator[_Finding]:
+    for index, stretcher in enumerate(stretchers):
+        for end in stretcher.ends:
+            there = 2 * hosts[end.host].radius_mm(end.along_host_mm)
+            if stretcher.diameter_mm > there:
+                thick, thin = (format_length(mm, units) for mm in (stretcher.diameter_mm, there))
+                text = f"{stretcher.name}: its shoulder of {thick} is wider than {end.host} there, {thin}"
+                yield _finding(index, "shoulder-wide", f"{text}; make the stretcher thinner or its host thicker")
 
 
 def _through(stretchers: Sequence[Stretcher], hosts: Mapping[str, Member], units: Units) -> Iterator[_Finding]:
@@ -177,3 +209,54 @@ def _crossing(stretchers: Sequence[Stretcher], units: Units) -> Iterator[_Findin
             text = f"{other.name}: it runs into {one.name}: their axes pass {format_length(apart, units)} apart"
             cure = f"{format_length(need, units)} clears them, or halve them into each other"
             yield _finding(index, "stretchers-cross", f"{text}; {cure}")
+
+
+def _between_shoulders(stretcher: Stretcher) -> tuple[Vector, Vector]:
+    first, second = stretcher.ends
+    way = unit(minus(second.axis_point_mm, first.axis_point_mm))
+    return further(first.axis_point_mm, way, first.reach_mm), further(second.axis_point_mm, way, -second.reach_mm)
+
+
+def _reach_mm(stretcher: Stretcher, square_to: Vector) -> float:
+    """How far the round of a stretcher reaches from its axis in a direction."""
+    way = unit(minus(*(end.axis_point_mm for end in stretcher.ends)))
+    return stretcher.diameter_mm / 2 * math.sqrt(max(0.0, 1.0 - dot(way, square_to) ** 2))
+
+
+def _blocked(stretchers: Sequence[Stretcher], members: Sequence[Member], units: Units) -> Iterator[_Finding]:
+    """Stretchers that run through legs, posts or spindles that they are not tenoned into."""
+    for index, stretcher in enumerate(stretchers):
+        hosts, axis = {end.host for end in stretcher.ends}, _between_shoulders(stretcher)
+        found: list[tuple[float, float, str]] = []
+        for member in members:
+            _, share, apart = nearest_on_segments(*axis, member.start, member.end)
+            need = stretcher.diameter_mm / 2 + member.radius_mm(share * member.length_mm)
+            if member.name not in hosts and apart < need:
+                found.append((apart - need, need, member.name))
+        if found:
+            short, need, nearest = min(found)
+            text = f"{stretcher.name}: it runs through {stems([name for *_, name in found])}: its axis passes"
+            far = f"{format_length(need + short, units)} from that of {nearest}"
+            clear = f"{format_length(need, units)} clears it"
+            yield _finding(index, "stretcher-blocked", f"{text} {far}, and {clear}; move one of them")
+
+
+def _on_the_floor(stretchers: Sequence[Stretcher], units: Units) -> Iterator[_Finding]:
+    for index, stretcher in enumerate(stretchers):
+        lowest = min(point[2] for point in _between_shoulders(stretcher)) - _reach_mm(stretcher, (0.0, 0.0, 1.0))
+        if lowest < 0.0:
+            text = f"{stretcher.name}: it reaches {format_length(-lowest, units)} below the floor; set it higher"
+            yield _finding(index, "stretcher-low", text)
+
+
+def _in_the_seat(stretchers: Sequence[Stretcher], seat: Slab, units: Units) -> Iterator[_Finding]:
+    """Stretchers that come into the seat from below or from above."""
+    for index, stretcher in enumerate(stretchers):
+        heights = [dot(minus(point, seat.top), seat.normal) for point in _between_shoulders(stretcher)]
+        middle = sum(heights) / 2 + seat.thickness_mm / 2
+        below = middle < 0.0
+        clear = -seat.thickness_mm - max(heights) if below else min(heights)
+        deep = _reach_mm(stretcher, seat.normal) - clear
+        if deep > 0.0:
+            text = f"{stretcher.name}: it comes {format_length(deep, units)} into the seat"
+            yield _finding(index, "stretcher-in-seat", f"{text}; set it {'lower' if below else 'higher'}")

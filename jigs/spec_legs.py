@@ -119,9 +119,13 @@ class _InMortise(Table):
     @classmethod
     def _as_the_mortise(cls, value: object, read: Callable[[object], float], info: ValidationInfo) -> float:
         """Left out, a part fills its mortise and its end is as thick; both are bounded by what they are taken from."""
-        if value is not None:
-            return read(value)
         mortise = info.data.get("mortise")
+        if value is not None:
+            given = read(value)
+            if info.field_name == "diameter" and mortise is not None and given < mortise.bit:
+                bit = format_length(mortise.bit, values.units_of(info))
+                raise refusal(f"is less than the bit of {bit}, and would not fill the mortise")
+            return given
         filled = 0.0 if mortise is None else mortise.mouth or mortise.bit
         return float(info.data.get("diameter", filled))
 

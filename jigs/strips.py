@@ -11,6 +11,7 @@ from collections.abc import Iterator
 from typing import NamedTuple
 
 from jigs.assembly import Assembly
+from jigs.cards import names_within
 from jigs.legs import Leg
 from jigs.quantities import format_angle
 from jigs.template import edge_distances_mm, sightline_words
@@ -21,7 +22,7 @@ from layout.piece import Piece
 from layout.shapes import arrow, box_outline, circle, cross, line
 
 # How wide a strip is, and how far it runs past the seat's edges.
-WIDTH_MM, RUN_MM = 32.0, 22.0
+WIDTH_MM, RUN_MM = 32.0, 25.0
 # Legs whose distances and angles agree within these share a strip (less than a pricked point, less than a card shows).
 SAME_MM, SAME_DEG = 0.02, 0.01
 
@@ -58,7 +59,7 @@ def strips(assembly: Assembly) -> tuple[Strip, ...]:
 def _same(strip: Strip, leg: Leg, back_mm: float, ahead_mm: float) -> bool:
     a, b = strip.leg.drill, leg.drill
     turns = (a.resultant_deg - b.resultant_deg, a.sightline_deg - b.sightline_deg)
-    if strip.leg.drilled != leg.drilled:
+    if strip.leg.drilled != leg.drilled or (strip.leg.kind == "leg") != (leg.kind == "leg"):
         return False
     near = max(abs(strip.back_mm - back_mm), abs(strip.ahead_mm - ahead_mm)) <= SAME_MM
     return near and max(map(abs, turns)) <= SAME_DEG and strip.leg.mortise == leg.mortise
@@ -73,7 +74,9 @@ def _piece(assembly: Assembly, number: int, strip: Strip) -> Piece:
     drawing = gather([*_lines(strip), *_words(assembly, strip)])
     points = tuple((leg.name, (0.0, 0.0)) for leg in strip.legs)
     faces = assembly.drilled_faces
-    notice = f"for the {faces[0].upper()} · arrow to the foot" if len(faces) == 1 else "each strip says its face"
+    above = bool(assembly.posts or assembly.spindles)
+    arrows = "each strip says what its arrow points to" if above else "arrow to the foot"
+    notice = f"for the {faces[0].upper()} · {arrows}" if len(faces) == 1 else f"each strip says its face · {arrows}"
     return Piece(f"strip {number}", "strips", "Sightline strips", drawing, "strip", notice, points)
 
 
@@ -100,11 +103,11 @@ def _words(assembly: Assembly, strip: Strip) -> Iterator[Text]:
     def fitted(words: str, y: float, height: float, bold: bool = False) -> Text:
         return Text((left, y), shortened(words, width, height, bold), height, bold=bold)
 
-    yield fitted(", ".join(leg.name for leg in strip.legs), 9.0, 3.5, bold=True)
+    yield Text((left, 9.0), names_within([leg.name for leg in strip.legs], width, 3.5, bold=True), 3.5, bold=True)
     yield fitted(f"on the {strip.leg.drilled}, centre on the mortise", 3.0, 2.5)
     yield fitted(f"bevel {format_angle(lean.bevel_deg)}  lean {format_angle(lean.resultant_deg)}", -6.5, 3.5, bold=True)
     yield fitted(f"{sight} {complement}", -12.5, 2.5)
-    end = "FOOT" if strip.leg.kind == "leg" else "TOP"
-    yield Text((strip.ahead_mm + 2.0, -12.5), end, 3.5, bold=True)
+    end = "FOOT" if strip.leg.kind == "leg" else "TOP END"
+    yield Text((strip.ahead_mm + 1.5, -12.5), end, 3.5, bold=True)
     for edge in (strip.back_mm, strip.ahead_mm):
         yield Text((edge, WIDTH_MM / 2 - 3.2), "edge", 2.0, align="centre")

@@ -15,7 +15,7 @@ from scipy.spatial.transform import Rotation
 from shapely import LineString, Polygon
 from shapely.ops import unary_union
 
-from jigs.cards import BLADE_MM, SAME_ANGLE_DEG, SPINDLE_ANGLE_DEG, card_pieces, cards, net
+from jigs.cards import BLADE_MM, SAME_ANGLE_DEG, SPINDLE_ANGLE_DEG, card_pieces, cards, names_within, net
 from jigs.quantities import format_angle
 from jigs.template import template
 from layout.drawing import Role
@@ -364,3 +364,11 @@ def test_legs_that_stand_square_share_one_square_card_without_an_arrow():
     assert not {"FOOT", "OWN SIDE", "OWN END"} & set(said)
     assert fills(square.drawing) == []
     assert net(made[2].lean_deg).leaning_edge[0][0] == net(made[2].lean_deg).leaning_edge[1][0]
+
+
+def test_every_spindle_that_shares_a_card_is_named_on_it_however_many_there_are():
+    names = [f"stick {k}" for k in range(1, 12)]
+    assert names_within(names, 110.0, 2.5) == "stick 1 to 11"
+    assert names_within(names[:2], 110.0, 2.5) == "stick 1, stick 2"
+    odd = [f"{k} times the one by the stove {'left' if k % 2 else 'right'}" for k in range(1, 12)]
+    assert names_within(odd, 110.0, 2.5).endswith("…")

@@ -524,3 +524,15 @@ def test_a_bore_that_passes_under_a_notch_is_told_where_neither_face_shows_it():
     (text,) = [words for words in of_code(found, "thin-edge") if "between the bore's ends" in words]
     # The bit's radius of 8 mm, 12 mm behind the tip.
     assert text.startswith("front: only 4 mm of wood")
+
+
+def test_a_mouth_that_is_wider_than_its_leg_is_told():
+    def reamed(mouth):
+        return told([one(at=[0, 150], end="back", mortise={"bit": 16, "taper": 10, "mouth": mouth}, diameter=30)])
+
+    assert of_code(reamed(30), "loose") == []
+    assert of_code(reamed(31), "loose") == [
+        "front: the mortise is 31 mm wide at its mouth, and the leg 30 mm; ream less wide or leave the leg thicker"
+    ]
+    # A leg whose thickness is not said fills its mouth.
+    assert of_code(told([one(at=[0, 150], end="back", mortise={"bit": 16, "taper": 10})]), "loose") == []

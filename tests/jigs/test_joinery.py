@@ -14,13 +14,14 @@ from jigs.joinery import (
     MEET_TOLERANCE_MM,
     STEEP_BORE_DEG,
     THROUGH_TOLERANCE_MM,
+    Slab,
     Tenon,
     cautions,
     longest_blind_tenon_mm,
     tenons,
     wood_between_mm,
 )
-from jigs.stretchers import place
+from jigs.stretchers import Member, place
 from tests.jigs.bars import BOX, SIDES, X_FORM, Bar, bar, chair, placed, plumb_chair
 
 
@@ -216,3 +217,68 @@ def test_numbers_are_in_the_maker_s_units():
     long = bar("left", "front left", "back left", heights=(100.0, 100.0), tenon_mm=33.0)
     found = cautions(place([long], plumb_chair()), plumb_chair(), "in")
     assert re.search(r"comes out \S+ in at the far side", found[0].text)
+
+
+def told(specs, members, **more):
+    return {caution.code: caution.text for caution in cautions(place(specs, members), members, **more)}
+
+
+def test_a_stretcher_that_runs_through_a_leg_or_a_rod_is_told_once_for_all_of_them():
+    legs = plumb_chair()
+    middle = Member("mid", (0.0, 50.0, 420.0), (0.0, 50.0, 0.0), 30.0, 20.0, (0.0, -1.0, 0.0))
+    rods = [Member(f"rod {k}", (60.0 + 5 * k, 55.0, 300.0), (60.0 + 5 * k, 55.0, 0.0), 8.0, 8.0, (0.0, 1.0, 0.0))
+            for k in range(3)]  # fmt: skip
+    front = bar("front", "front left", "front right", heights=(210.0, 210.0))
+    found = told([front], [*legs, middle], others=rods)
+    # Half-way down Ø 30 to Ø 20 is Ø 25: 11 mm of the stretcher and 12.5 mm of the leg.
+    assert found == {
+        "stretcher-blocked": "front: it runs through mid; rod 0 to 2: its axis passes 0 mm from that of mid, "
+        "and 23.5 mm clears it; move one of them"
+    }
+    assert told([replace(front, heights_mm=(210.0, 210.0))], legs) == {}
+    aside = [replace(middle, start=(0.0, 50.0 - 23.4, 420.0), end=(0.0, 50.0 - 23.4, 0.0))]
+    assert set(told([front], [*legs, *aside])) == {"stretcher-blocked"}
+    clear = [replace(middle, start=(0.0, 50.0 - 23.6, 420.0), end=(0.0, 50.0 - 23.6, 0.0))]
+    assert told([front], [*legs, *clear]) == {}
+
+
+@pytest.mark.parametrize(("height", "below"), [(11.1, None), (10.0, "1 mm"), (0.0, "11 mm")])
+def test_a_stretcher_that_reaches_below_the_floor_is_told(height, below):
+    found = told([bar("front", "front left", "front right", heights=(height, height))], plumb_chair())
+    text = f"front: it reaches {below} below the floor; set it higher"
+    assert found == ({} if below is None else {"stretcher-low": text})
+
+
+@pytest.mark.parametrize("pitch", [0.0, 6.0])
+def test_a_stretcher_that_comes_into_the_seat_is_told_from_below_and_from_above(pitch):
+    c, s = math.cos(math.radians(pitch)), math.sin(math.radians(pitch))
+    legs = plumb_chair()
+    posts = [Member(f"post {k}", (x, 100.0, 440.0), (x, 100.0, 800.0), 25.0, 20.0, (0.0, 1.0, 0.0))
+             for k, x in enumerate((-120.0, 120.0))]  # fmt: skip
+    # The underside passes through the front legs' upper ends, the top face 40 mm square above it.
+    at_legs = np.array([0.0, 50.0, 420.0])
+    normal = (0.0, s, c)
+    seat = Slab(tuple(at_legs + 40.0 * np.array(normal)), normal, 40.0)
+    top_at_posts = (at_legs + 40.0 * np.array(normal))[2] - (100.0 - (at_legs + 40.0 * np.array(normal))[1]) * s / c
+    for clear, deep in ((11.5, None), (8.0, 3.0)):
+        below = bar("front", "front left", "front right", heights=(420.0 - clear / c,) * 2)
+        above = bar("rail", "post 0", "post 1", heights=(top_at_posts + clear / c,) * 2)
+        found = [told([one], [*legs, *posts], seat=seat) for one in (below, above)]
+        if deep is None:
+            assert found == [{}, {}]
+        else:
+            assert found == [
+                {"stretcher-in-seat": f"front: it comes {deep:g} mm into the seat; set it lower"},
+                {"stretcher-in-seat": f"rail: it comes {deep:g} mm into the seat; set it higher"},
+            ]
+
+
+def test_a_shoulder_wider_than_its_host_is_told():
+    legs = plumb_chair()
+    wide = bar("front", "front left", "back left", heights=(110.0, 110.0), diameter_mm=30.2)
+    found = [c.text for c in cautions(place([wide], legs), legs) if c.code == "shoulder-wide"]
+    assert found == [
+        f"front: its shoulder of 30.2 mm is wider than {leg} there, 30 mm; "
+        "make the stretcher thinner or its host thicker"
+        for leg in ("front left", "back left")
+    ]

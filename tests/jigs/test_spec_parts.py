@@ -440,3 +440,13 @@ def test_any_knowns_make_a_part_or_are_refused(table, knowns, angles_from, pitch
     legs = [part] if table == "legs" else BLAMELESS
     tables = {"posts": [part]} if table == "posts" else None
     check(furnished_text(legs, None, tables, pitch=pitch, drill_from=face))
+
+
+@pytest.mark.parametrize("table", ["legs", "posts"])
+def test_a_part_thinner_than_its_mortise_is_refused(table):
+    part = {"name": "x", "at": [0, 150], "end": "back", "rake": 5, "mortise": 25, "diameter": 24.9}
+    part |= {"length": 300} if table == "posts" else {}
+    legs = [part] if table == "legs" else BLAMELESS
+    tables = {} if table == "legs" else {"posts": [part]}
+    (line,) = refusals(legs, tables=tables)
+    assert line == f"{table}[0].diameter: 24.9 is less than the bit of 25 mm, and would not fill the mortise"
