@@ -17,6 +17,7 @@ from jigs.assembly import Assembly, as_bar, other_face
 from jigs.bores import Section, bored_mm, least_web_mm, mouth_mm, sections, slice_at, web_mm, wood_above_mm
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.legs import Face, Leg
+from jigs.names import in_words
 from jigs.problems import Caution
 from jigs.quantities import MM_PER_INCH, format_angle, format_weight
 from jigs.seats import Blank
@@ -75,9 +76,9 @@ SEAT_HEIGHTS = {
 
 
 class Finding(NamedTuple):
-    """What is unwise about one part. Of spindles in a row the same is said once, about the one where `left` is least.
+    """What is unwise about one part. Of a row or ring the same is said once, about the part where `left` is least.
 
-    `about` tells apart what has one code and place: a face, or nothing.
+    `about` tells apart what has one code and place: a face, the place of a neighbour, or nothing.
     """
 
     part: Leg
@@ -97,17 +98,19 @@ def cautions(assembly: Assembly) -> tuple[Caution, ...]:
     found = [*_trips(assembly), *_edges(assembly, mouths), *_short_grain(assembly, mouths), *_floors(assembly)]
     found += [*_loose(assembly), *_steep(assembly), *_crossed(assembly), *_webs(assembly)]
     whole = (*_stands(assembly), *_seat_height(assembly), *_unequal(assembly))
-    return (*_merged(found), *_stretchers(assembly), *whole, *_notes(assembly))
+    return (*_merged(found, assembly.bored), *_stretchers(assembly), *whole, *_notes(assembly))
 
 
-def _merged(findings: Iterable[Finding]) -> Iterator[Caution]:
+def _merged(findings: Iterable[Finding], parts: Sequence[Leg]) -> Iterator[Caution]:
     alike: dict[tuple[str, ...], list[Finding]] = {}
     for one in findings:
-        same = one.about if one.part.kind == "spindle" else one.text
+        in_a_row = one.part.kind == "spindle" or one.part.place.startswith("rings")
+        same = one.about if in_a_row else one.text
         alike.setdefault((one.code, one.part.place, one.part.kind, same), []).append(one)
     for group in alike.values():
         worst = min(group, key=lambda finding: finding.left)
-        names = ", ".join(dict.fromkeys(finding.part.name for finding in group))
+        named = {finding.part.name for finding in group}
+        names = in_words([part.name for part in parts if part.name in named])
         least = f" (the worst: {worst.part.name})" if len({finding.text for finding in group}) > 1 else ""
         yield Caution(worst.code, worst.part.place, f"{names}: {worst.text}{least}")
 
@@ -262,7 +265,7 @@ def _webs(assembly: Assembly) -> Iterator[Finding]:
         web = web_mm(one, other, assembly.thickness_mm)
         if web < THIN_WEB_MM:
             text = f"only {assembly.length(web)} of wood between its bore and that of {one.name}; move them apart"
-            yield Finding(other, "thin-web", text, web)
+            yield Finding(other, "thin-web", text, web, one.place)
 
 
 def _stretchers(assembly: Assembly) -> tuple[Caution, ...]:

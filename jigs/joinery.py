@@ -16,7 +16,7 @@ import numpy as np
 from numpy.typing import NDArray
 
 from jigs.frames import Vector, dot, further, minus, nearest_on_segments, unit
-from jigs.names import stems
+from jigs.names import in_words
 from jigs.problems import Caution
 from jigs.quantities import Units, format_angle, format_length
 from jigs.stretchers import Member, Stretcher, StretcherEnd
@@ -235,7 +235,7 @@ def _blocked(stretchers: Sequence[Stretcher], members: Sequence[Member], units: 
                 found.append((apart - need, need, member.name))
         if found:
             short, need, nearest = min(found)
-            text = f"{stretcher.name}: it runs through {stems([name for *_, name in found])}: its axis passes"
+            text = f"{stretcher.name}: it runs through {in_words([name for *_, name in found])}: its axis passes"
             far = f"{format_length(need + short, units)} from that of {nearest}"
             clear = f"{format_length(need, units)} clears it"
             yield _finding(index, "stretcher-blocked", f"{text} {far}, and {clear}; move one of them")

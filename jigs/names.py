@@ -7,6 +7,14 @@ from __future__ import annotations
 
 from collections.abc import Callable, Iterator, Sequence
 
+# More names than this are drawn together.
+_MOST_IN_FULL = 4
+
+
+def in_words(names: Sequence[str]) -> str:
+    """Names in a row for a sentence: in full where they are few, else drawn together."""
+    return ", ".join(names) if len(names) <= _MOST_IN_FULL else stems(names)
+
 
 def stems(names: Sequence[str]) -> str:
     """Names in a row, those that differ in their last word alone together: `front left, right; spindle 1 to 7`."""

@@ -210,6 +210,13 @@ class LegSpec(_Bored):
     diameter: Diameter = Field(default=None, validate_default=True)
     foot_diameter: Diameter = Field(default=None, validate_default=True)
 
+    @field_validator("face_toward")
+    @classmethod
+    def _falls(cls, toward: float, info: ValidationInfo) -> float:
+        if info.data.get("face_fall") == 0.0:
+            raise refusal("says where a face falls to that does not fall", "give face_fall, or leave face_toward out")
+        return toward
+
 
 class RingSpec(_InMortise):
     """`count` legs evenly round a pitch circle, each leaning straight out by `resultant` from square to the seat.

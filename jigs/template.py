@@ -8,6 +8,7 @@ from __future__ import annotations
 
 import math
 from collections.abc import Iterator
+from itertools import groupby
 
 from jigs.assembly import Assembly, Face, other_face
 from jigs.bores import bored_mm, mouth_mm, sections
@@ -38,6 +39,8 @@ APART_MM = 6.0
 ASIDE_MM, FRONT_ASIDE_MM = 12.0, 23.0
 # No more proof lengths than a maker will measure.
 MOST_PROOFS = 8
+# Fewer centres than these leave a page of the template unproven.
+ENOUGH_PROVEN = 6
 
 
 def face_map(face: Face) -> Affine:
@@ -146,7 +149,7 @@ def _labels(assembly: Assembly, face: Face) -> Iterator[Label]:
             aside = ASIDE_MM if leg.kind != "spindle" else leg.mortise.bit / 2
             yield Label(words, face_map(face).point(leg.on_face(face)), aside, led=True)
     yield Label(_title_words(assembly, face), (0.0, bounds.y0 + 0.62 * bounds.height))
-    if len(assembly.legs) > 1:
+    if len(assembly.bored) > 1:
         yield Label(_proof_words(assembly, face), (0.0, bounds.y0 + 0.4 * bounds.height))
     yield from _grain(assembly, face)
 
@@ -162,7 +165,7 @@ def _front() -> Wording:
 def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Wording, ...]:
     name = (leg.name, 3.5, True)
     if not in_full(assembly, leg, face):
-        return (block((leg.name, 2.5, False)),) if sections(leg, face) else ()
+        return _passing_words(leg, face)
     if leg.kind == "spindle":
         return (block((leg.name, 2.5, True), (f"lean {format_angle(leg.drill.resultant_deg)}", 2.5, False)),)
     hole = (bore_words(assembly, leg), 2.5, False)
@@ -178,6 +181,14 @@ def _leg_words(assembly: Assembly, leg: Leg, face: Face) -> tuple[Wording, ...]:
     middling = [name, (f"lean {lean}  bevel {bevel}", 3.5, False), (sight, 2.5, False), *rest]
     small = [name, (f"lean {lean}", 2.5, False), (f"bevel {bevel}", 2.5, False), (sight, 2.5, False), *rest]
     return (block(*large), block(*middling), block(*small))
+
+
+def _passing_words(leg: Leg, face: Face) -> tuple[Wording, ...]:
+    """Beside a hole that is bored from the other face: not to be bored here."""
+    name = (leg.name, 2.5, False)
+    if sections(leg, face):
+        return (block(name, (f"comes through from the {leg.drilled}", 2.5, False)), block(name))
+    return (block(name, (f"bored from the {leg.drilled}", 2.5, False)), block(name))
 
 
 def sightline_words(leg: Leg) -> tuple[str, str]:
@@ -225,15 +236,27 @@ def proofs(assembly: Assembly, face: Face) -> tuple[tuple[str, str, float], ...]
 
     The neighbours round the seat first, then the longest others.
     """
-    drilled = [leg for leg in assembly.bored if leg.drilled == face and leg.kind != "spindle"]
-    legs = sorted(drilled if len(drilled) > 1 else assembly.legs, key=lambda leg: _turn_about_middle(assembly, leg))
-    if len(legs) == 2:
-        pairs = [(legs[0], legs[1])]
+    parts = sorted(_proven(assembly, face), key=lambda part: _turn_about_middle(assembly, part))
+    if len(parts) == 2:
+        pairs = [(parts[0], parts[1])]
     else:
-        pairs = list(zip(legs, [*legs[1:], legs[0]], strict=True))
-        rest = [(p, q) for i, p in enumerate(legs) for q in legs[i + 2 :] if (p, q) != (legs[0], legs[-1])]
+        pairs = list(zip(parts, [*parts[1:], parts[0]], strict=True))
+        rest = [(p, q) for i, p in enumerate(parts) for q in parts[i + 2 :] if (p, q) != (parts[0], parts[-1])]
         pairs += sorted(rest, key=lambda pair: -math.dist(pair[0].on_face(face), pair[1].on_face(face)))
     return tuple((p.name, q.name, math.dist(p.on_face(face), q.on_face(face))) for p, q in pairs[:MOST_PROOFS])
+
+
+def _proven(assembly: Assembly, face: Face) -> list[Leg]:
+    """The parts whose centres prove a face's taping: what is bored from it, of rows the ends; where these are few, what
+    else has its centre marked there.
+    """
+    found = [part for part in assembly.bored if part.drilled == face and part.kind != "spindle"]
+    for _, row in groupby((part for part in assembly.spindles if part.drilled == face), key=lambda part: part.place):
+        first, *_, last = row
+        found += [first, last]
+    if len(found) < ENOUGH_PROVEN:
+        found += [part for part in assembly.bored if part.drilled != face and sections(part, face)]
+    return found if len(found) > 1 else list(assembly.legs)
 
 
 def _turn_about_middle(assembly: Assembly, leg: Leg) -> float:

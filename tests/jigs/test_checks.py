@@ -536,3 +536,13 @@ def test_a_mouth_that_is_wider_than_its_leg_is_told():
     ]
     # A leg whose thickness is not said fills its mouth.
     assert of_code(told([one(at=[0, 150], end="back", mortise={"bit": 16, "taper": 10})]), "loose") == []
+
+
+def test_a_ring_whose_bores_come_near_each_other_is_told_in_one_line():
+    ring = {"name": "r", "count": 24, "circle": 150, "resultant": 5, "mortise": 12}
+    text = spec_text([], shape="round", diameter=400, width=None, depth=None)
+    text = text.replace("[[legs]]", "") + "\n[[rings]]\n" + "\n".join(_lines(ring))
+    found = cautions(assemble(parse_spec(text.encode(), "ring.toml"), "ring.toml"))
+    webs = [caution.text for caution in found if caution.code == "thin-web"]
+    assert len(webs) == 1
+    assert webs[0].startswith("r 2 to 24: only ")

@@ -232,7 +232,7 @@ def test_a_stretcher_that_runs_through_a_leg_or_a_rod_is_told_once_for_all_of_th
     found = told([front], [*legs, middle], others=rods)
     # Half-way down Ø 30 to Ø 20 is Ø 25: 11 mm of the stretcher and 12.5 mm of the leg.
     assert found == {
-        "stretcher-blocked": "front: it runs through mid; rod 0 to 2: its axis passes 0 mm from that of mid, "
+        "stretcher-blocked": "front: it runs through mid, rod 0, rod 1, rod 2: its axis passes 0 mm from that of mid, "
         "and 23.5 mm clears it; move one of them"
     }
     assert told([replace(front, heights_mm=(210.0, 210.0))], legs) == {}

@@ -115,10 +115,18 @@ def test_a_legs_dished_face_changes_what_is_drilled_and_nothing_that_stands(face
 
 
 def test_a_fall_of_nought_leaves_the_leg_as_it_was():
-    plain, same = (furnished([{**LEG, **more}], **SEAT) for more in ({}, {"face_fall": 0, "face_toward": 70}))
+    plain, same = (furnished([{**LEG, **more}], **SEAT) for more in ({}, {"face_fall": 0}))
     assert [leg.drill for leg in plain.legs] == [leg.drill for leg in same.legs]
 
 
 def test_a_face_that_falls_too_far_is_told():
     assert refusals([{**LEG, "face_fall": 31}]) == ["legs[0].face_fall: 31 is not between 0 and 30 degrees"]
     assert refusals([{**LEG, "face_fall": -1}]) == ["legs[0].face_fall: -1 is not between 0 and 30 degrees"]
+
+
+def test_a_way_to_fall_without_a_fall_is_refused():
+    (line,) = refusals([{**LEG, "face_toward": 70}], **SEAT)
+    assert line == (
+        "legs[0].face_toward: 70 says where a face falls to that does not fall; "
+        "give face_fall, or leave face_toward out"
+    )

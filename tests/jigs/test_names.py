@@ -4,7 +4,7 @@ from __future__ import annotations
 
 import pytest
 
-from jigs.names import short_name, stems
+from jigs.names import in_words, short_name, stems
 
 
 @pytest.mark.parametrize(
@@ -33,3 +33,9 @@ def test_names_that_differ_in_their_last_word_are_drawn_together(names, said):
 )
 def test_a_name_that_is_cut_keeps_its_side(name, most, short):
     assert short_name(name, lambda words: len(words) < most) == short
+
+
+def test_few_names_are_told_in_full_and_many_are_drawn_together():
+    names = [f"spindle {k}" for k in range(1, 6)]
+    assert in_words(names[:4]) == "spindle 1, spindle 2, spindle 3, spindle 4"
+    assert in_words(names) == "spindle 1 to 5"
