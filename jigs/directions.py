@@ -105,7 +105,7 @@ def _started(spec: LegSpec, place: Place, seating: Seating) -> Direction:
     from jigs.starts import aim, from_copy  # noqa: PLC0415 - most chairs start from angles
 
     if spec.picture is not None:
-        return _from_picture(spec.picture, place, spec.at[0])
+        return _from_picture(spec.picture, place, spec.at[0], seating.units)
     if spec.measured is not None:
         m = spec.measured
         splay, rake = from_copy(m.heights, m.across, m.along, place.side, place.end)
@@ -117,7 +117,7 @@ def _started(spec: LegSpec, place: Place, seating: Seating) -> Direction:
     return Direction(aim(point, _stance(place, seating, spec.foot_diameter).mortise))
 
 
-def _from_picture(picture: Picture, place: Place, pictured_x_mm: float) -> Direction:
+def _from_picture(picture: Picture, place: Place, pictured_x_mm: float, units: Units) -> Direction:
     from jigs.pictures import Sight, from_picture  # noqa: PLC0415 - most chairs start from angles
 
     def sight(table: object) -> Sight | None:
@@ -130,7 +130,8 @@ def _from_picture(picture: Picture, place: Place, pictured_x_mm: float) -> Direc
     assert side_view is not None  # the table must have one
     # The front picture shows the leg that stands where the table says; its twin is the mirror image.
     pictured = abs(place.side) if pictured_x_mm > 0.0 else -abs(place.side)
-    lean = from_picture(sight(picture.front), side_view, pictured, place.end, picture.taken_from, picture.pointing)
+    front, taken_from, pointing = sight(picture.front), picture.taken_from, picture.pointing
+    lean = from_picture(front, side_view, pictured, place.end, taken_from, pointing, units)
     return Direction(direction_of(lean.splay_deg, lean.rake_deg, place.side, place.end), lean.note)
 
 

@@ -1,6 +1,6 @@
 """Splay and rake off a front and a side picture of a chair, with what an error of pointing makes of them.
 
-Owns the reading of pixels. Imports `knowns`; no image library: points come as numbers.
+Owns the reading of pixels. Imports `knowns` and `quantities`; no image library: points come as numbers.
 
 Pixels run right and down, as every viewer shows them. A picture is read against its own level line, two points on the
 seat's edge or on the floor, so a camera held askew does not matter; one that stands near does.
@@ -13,6 +13,7 @@ from dataclasses import dataclass
 from typing import Literal
 
 from jigs.knowns import CannotSolve, decimals
+from jigs.quantities import Units, format_length
 
 Pixel = tuple[float, float]
 TakenFrom = Literal["right", "left"]
@@ -65,12 +66,14 @@ def from_picture(
     end: int,
     taken_from: TakenFrom = "right",
     pointing_px: float = POINTING_PX,
+    units: Units = "mm",
 ) -> PictureLean:
     """The leg's splay off a picture taken from the front, its rake off one from the right or the left of the chair.
 
     In the front picture +x of the plan is to the right. Taken from the right, the chair's front is to the left in the
-    side picture; from the left, to the right. A leg on the centre line (side 0) needs no front picture. Raises
-    CannotSolve for lines too short to say anything and for a leg along the level line.
+    side picture; from the left, to the right. A leg on the centre line (side 0) needs no front picture. Where a length
+    is known, the note says in `units` how far apart the leg's two marks lie. Raises CannotSolve for lines too short to
+    say anything and for a leg along the level line.
     """
     if not (pointing_px >= 0.0 and math.isfinite(pointing_px)):
         raise CannotSolve(f"a pointing error of {pointing_px:g} px is none", "give 0 or more")
@@ -86,7 +89,9 @@ def from_picture(
         rake_pm_deg=rake_pm,
         front_mm_per_px=mm_per_px(front) if front else None,
         side_mm_per_px=mm_per_px(side_view),
-        note=_note(pointing_px, splay_pm, rake_pm, side),
+        note=_note(pointing_px, splay_pm, rake_pm, side)
+        + (_scaled("front", front, units) if front else "")
+        + _scaled("side", side_view, units),
     )
 
 
@@ -170,3 +175,12 @@ def _note(pointing_px: float, splay_pm: float, rake_pm: float, side: int) -> str
         "A picture taken from near by falsifies both, and that is not in these figures: stand back at least "
         f"{STAND_BACK_HEIGHTS} times the chair's height, hold the camera at the seat's height, and square to the chair."
     )
+
+
+def _scaled(view: str, sight: Sight, units: Units) -> str:
+    """What a known length makes of the leg in a picture; nothing where none is known."""
+    if mm_per_px(sight) is None:
+        return ""
+    across, down = (format_length(abs(mm), units) for mm in distances_mm(sight, *sight.leg))
+    marks = f"the leg's two marks in the {view} picture lie {across} apart across and {down} in height"
+    return f" By its known length, {marks}."

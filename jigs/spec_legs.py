@@ -87,7 +87,17 @@ class Sight(Table):
     level: PixelLine
     leg: PixelLine
     known: PixelLine | None = None
-    known_length: SeatSize | None = None
+    known_length: SeatSize | None = Field(default=None, validate_default=True)
+
+    @field_validator("known_length")
+    @classmethod
+    def _with_its_ends(cls, length: float | None, info: ValidationInfo) -> float | None:
+        if "known" in info.data and (info.data["known"] is None) != (length is None):
+            cure = "give both, or leave both out"
+            if length is None:
+                raise refusal("known says between which two points, and not how far apart they are", cure, given="")
+            raise refusal("is given without known, the two points that are so far apart", cure)
+        return length
 
 
 class Picture(Table):

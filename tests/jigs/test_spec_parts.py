@@ -48,7 +48,12 @@ def test_every_way_to_say_a_lean_is_read():
         "equal_from": ["a", "b"],
         "aim_at": [0, 180, "120 cm"],
         "measured": {"heights": [10, "300 mm"], "across": [120, 100], "along": [-5, 60]},
-        "picture": {"front": sight, "side": {**sight, "known": None}, "taken_from": "left", "pointing": 3},
+        "picture": {
+            "front": sight,
+            "side": {**sight, "known": None, "known_length": None},
+            "taken_from": "left",
+            "pointing": 3,
+        },
         "angles_from": "seat",
         "face_fall": "4°",
         "face_toward": -90,
@@ -450,3 +455,18 @@ def test_a_part_thinner_than_its_mortise_is_refused(table):
     tables = {} if table == "legs" else {"posts": [part]}
     (line,) = refusals(legs, tables=tables)
     assert line == f"{table}[0].diameter: 24.9 is less than the bit of 25 mm, and would not fill the mortise"
+
+
+@pytest.mark.parametrize(
+    ("known", "words"),
+    [
+        ({"known": [[0, 0], [0, 300]]}, "known says between which two points, and not how far apart they are"),
+        ({"known_length": 300}, "300 is given without known, the two points that are so far apart"),
+    ],
+)
+def test_a_known_length_of_a_picture_needs_its_two_points_and_its_length(known, words):
+    sight = {"level": [[0, 0], [500, 0]], "leg": [[100, 50], [80, 450]]}
+    leg = {"name": "front", "at": [100, 60], "mirror": True, "mortise": 25}
+    leg["picture"] = {"front": sight, "side": {**sight, **known}}
+    (line,) = refusals([leg, BLAMELESS[-1]])
+    assert line == f"legs[0].picture.side.known_length: {words}; give both, or leave both out"

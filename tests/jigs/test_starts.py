@@ -2,6 +2,7 @@
 
 import itertools
 import math
+from dataclasses import replace
 
 import numpy as np
 import pytest
@@ -13,6 +14,7 @@ from jigs.knowns import CannotSolve
 from jigs.legs import direction_of, lean_of
 from jigs.outlines import ellipse_outline
 from jigs.pictures import Sight, distances_mm, from_picture, mm_per_px
+from jigs.quantities import format_length
 from jigs.seats import Blank
 from jigs.solve import Stance, solve
 from jigs.starts import aim, foot_between, from_copy, ring, ring_resultant_deg
@@ -129,6 +131,21 @@ def test_the_note_says_how_far_to_stand_back():
         f"and rake by {lean.rake_pm_deg:.2f}°. "
         "A picture taken from near by falsifies both, and that is not in these figures: stand back at least 10 times "
         "the chair's height, hold the camera at the seat's height, and square to the chair."
+    )
+
+
+@pytest.mark.parametrize("units", ["mm", "in"])
+def test_a_known_length_says_how_far_the_marks_on_the_leg_are_apart(units):
+    front, side_view = sights(leg_points(12.0, 9.0, 1, -1))
+    # 300 mm of the leg's height, whatever the pixels: the marks are as far apart across as its splay makes them.
+    rise = abs(front.leg[1][1] - front.leg[0][1])
+    scaled = replace(front, known=((0.0, 0.0), (0.0, rise)), known_mm=300.0)
+    lean = from_picture(scaled, side_view, 1, -1, units=units)
+    plain = from_picture(front, side_view, 1, -1).note
+    across, down = (format_length(mm, units) for mm in (300.0 * math.tan(math.radians(12.0)), 300.0))
+    assert lean.note == (
+        f"{plain} By its known length, the leg's two marks in the front picture lie {across} apart across "
+        f"and {down} in height."
     )
 
 
