@@ -19,7 +19,7 @@ from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.legs import Face, Leg
 from jigs.names import in_words
 from jigs.problems import Caution
-from jigs.quantities import MM_PER_INCH, format_angle, format_weight
+from jigs.quantities import MM_PER_INCH, format_angle
 from jigs.seats import Blank
 from layout.curves import mapped
 from layout.geometry import Affine
@@ -309,23 +309,17 @@ def _tips(assembly: Assembly, stability: Stability, weighed: str) -> Iterator[Ca
 
 
 def _load(assembly: Assembly, load: EdgeLoad) -> str:
-    from jigs.statics import GRAVITY_M_S2  # noqa: PLC0415 - as above
+    from jigs.loads import hung  # noqa: PLC0415 - as above
 
     newtons = load.load_n or 0.0
-    kg = newtons / GRAVITY_M_S2
-    return f"{math.floor(newtons)} N ({format_weight(kg, assembly.furniture.units, 1)}) at the {load.at}"
+    return f"{math.floor(newtons)} N ({hung(assembly, newtons)}) at the {load.at}"
 
 
 def _tips_as_published(case: PublishedCase) -> Caution:
     """For seats: the loads are those of a sitter."""
-    from jigs import statics  # noqa: PLC0415 - as above
+    from jigs.loads import published_words  # noqa: PLC0415 - as above
 
-    x, y = case.toward
-    at, _ = max(statics.PLACES, key=lambda place: place[1][0] * x + place[1][1] * y)
-    loads = (
-        f"{statics.PUBLISHED_DOWN_N:.0f} N down {statics.PUBLISHED_FROM_EDGE_MM:.0f} mm inside the seat's edge with "
-        f"{statics.PUBLISHED_OUTWARD_N:.0f} N outward"
-    )
+    at, loads = published_words(case)
     text = f"the loads of EN 1022, {loads}, tip it to the {at} by {-case.margin_nm:.1f} N m"
     return Caution("tips-published", "seat", f"{text}; spread the feet (a static sum as a guide and no test)")
 

@@ -257,24 +257,15 @@ def _newtons(load: EdgeLoad) -> str:
 
 
 def _hung(assembly: Assembly, load: EdgeLoad) -> str:
-    """The same as the weight that presses so."""
-    from jigs.statics import GRAVITY_M_S2
+    from jigs.loads import hung
 
-    if load.load_n is None:
-        return ""
-    kg = load.load_n / GRAVITY_M_S2
-    return format_weight(kg, assembly.furniture.units, 1)
+    return "" if load.load_n is None else hung(assembly, load.load_n)
 
 
 def _published(case: PublishedCase) -> str:
-    from jigs import statics
+    from jigs.loads import published_words
 
-    x, y = case.toward
-    at, _ = max(statics.PLACES, key=lambda place: place[1][0] * x + place[1][1] * y)
-    loads = (
-        f"{statics.PUBLISHED_DOWN_N:.0f} N down {statics.PUBLISHED_FROM_EDGE_MM:.0f} mm inside the seat's edge with "
-        f"{statics.PUBLISHED_OUTWARD_N:.0f} N outward at its height"
-    )
+    at, loads = published_words(case)
     margin = f"{abs(case.margin_nm):.1f} N m"
     ends = f"it stays down, with {margin} to spare" if case.stays_down else f"it tips, {margin} short"
-    return f"The case as published (EN 1022, every way round): {loads}; worst to the {at}, where {ends}."
+    return f"The case as published (EN 1022, every way round): {loads} at its height; worst to the {at}, where {ends}."

@@ -14,12 +14,13 @@ from typing import TYPE_CHECKING, NamedTuple
 from jigs.assembly import Assembly
 from jigs.frames import Vector, further, minus, unit
 from jigs.legs import Leg
+from jigs.quantities import format_weight
 from jigs.wood import density_kg_m3, species_name
 from layout.curves import flatten, mapped
 from layout.geometry import Affine, Point
 
 if TYPE_CHECKING:
-    from jigs.statics import Part, Stability
+    from jigs.statics import Part, PublishedCase, Stability
     from jigs.stretchers import Stretcher
 
 # Where no wood is said: a light one for furniture, so that the sums err toward tipping (practice).
@@ -56,6 +57,23 @@ def weighed_as(assembly: Assembly) -> str:
         for wood in woods(assembly)
     )
     return f"weighed {seat}" if seat == rest else f"weighed with the seat {seat} and the rest {rest}"
+
+
+def hung(assembly: Assembly, load_n: float) -> str:
+    """A load as the weight that presses so, in the maker's units."""
+    from jigs.statics import GRAVITY_M_S2  # noqa: PLC0415 - not every run weighs
+
+    return format_weight(load_n / GRAVITY_M_S2, assembly.furniture.units, 1)
+
+
+def published_words(case: PublishedCase) -> tuple[str, str]:
+    """Which way the published loads are worst, and what they are."""
+    from jigs import statics  # noqa: PLC0415 - as above
+
+    x, y = case.toward
+    at, _ = max(statics.PLACES, key=lambda place: place[1][0] * x + place[1][1] * y)
+    down = f"{statics.PUBLISHED_DOWN_N:.0f} N down {statics.PUBLISHED_FROM_EDGE_MM:.0f} mm inside the seat's edge"
+    return at, f"{down} with {statics.PUBLISHED_OUTWARD_N:.0f} N outward"
 
 
 def weight_parts(assembly: Assembly) -> tuple[Part, ...]:
