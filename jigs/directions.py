@@ -11,10 +11,11 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING, NamedTuple
 
 from jigs.frames import SeatFrame, Vector
-from jigs.knowns import CannotSolve
-from jigs.legs import direction_of
+from jigs.knowns import MOST_LEAN_DEG, CannotSolve
+from jigs.legs import direction_of, lean_of
 from jigs.quantities import Units
 from jigs.seats import Blank
+from jigs.spec_base import ON_CENTRE_LINE_MM
 from jigs.spec_legs import START_KEYS, LegSpec, Picture, PostSpec
 from layout.geometry import Point
 
@@ -53,20 +54,26 @@ class Direction(NamedTuple):
 
 
 def leg_direction(
-    spec: LegSpec, place: Place, seating: Seating, neighbours: tuple[Point, Point] | None = None
+    spec: LegSpec,
+    place: Place,
+    seating: Seating,
+    neighbours: tuple[Point, Point] | None = None,
+    foot_mm: float | None = None,
 ) -> Direction:
-    """The direction of one leg from mortise to foot; `neighbours` are the feet that `equal_from` names.
+    """The direction of one leg from mortise to foot; `neighbours` are the feet that `equal_from` names, `foot_mm` the
+    foot's diameter where it is not the table's.
 
     Raises CannotSolve, with what would do, for too little, too much, or what no leg has.
     """
     starts = [key for key in START_KEYS if getattr(spec, key) is not None]
     knowns = _knowns(spec, place.side)
     if starts:
-        _alone(starts, knowns)
-        return _started(spec, place, seating)
+        _alone(starts, knowns, spec)
+        return _leaning_no_more(_started(spec, place, seating), place, seating)
     if set(knowns) == {"splay", "rake"} and spec.angles_from == "plumb" and neighbours is None:
         return Direction(direction_of(knowns["splay"], knowns["rake"], place.side, place.end))
-    return _solved(knowns, place, seating, spec.angles_from == "seat", spec.foot_diameter, neighbours)
+    foot = spec.foot_diameter if foot_mm is None else foot_mm
+    return _solved(knowns, place, seating, spec.angles_from == "seat", foot, neighbours)
 
 
 def post_direction(spec: PostSpec, place: Place, seating: Seating) -> Direction:
@@ -94,8 +101,11 @@ def _knowns(spec: LegSpec, side: int) -> dict[str, float]:
     return found
 
 
-def _alone(starts: list[str], knowns: Mapping[str, float]) -> None:
+def _alone(starts: list[str], knowns: Mapping[str, float], spec: LegSpec) -> None:
     others = [*starts[1:], *(key for key in knowns if not (key == "splay" and knowns[key] == 0.0))]
+    others += ["equal_from"] if spec.equal_from is not None else []
+    if not others and spec.angles_from == "seat":
+        raise CannotSolve(f"angles_from says nothing of a leg that is given by its {starts[0]}", "leave it out")
     if others:
         given = " and ".join([starts[0], others[0]])
         raise CannotSolve(f"{given} both say how the leg leans", f"keep {starts[0]} alone, or leave it out")
@@ -112,9 +122,24 @@ def _started(spec: LegSpec, place: Place, seating: Seating) -> Direction:
         return Direction(direction_of(splay, rake, place.side, place.end))
     assert spec.aim_at is not None  # one of the three starts is given
     x, y, z = spec.aim_at
+    if place.side == 0 and abs(x) > ON_CENTRE_LINE_MM:
+        rule = "the point aimed at is off the centre line, and the leg on it would lean sideways"
+        raise CannotSolve(rule, "aim at a point with x = 0, or move the mortise")
     # A twin aims at the twin of the point.
     point = (-x if spec.mirror and place.at_mm[0] * spec.at[0] < 0.0 else x, y, z)
     return Direction(aim(point, _stance(place, seating, spec.foot_diameter).mortise))
+
+
+def _leaning_no_more(direction: Direction, place: Place, seating: Seating) -> Direction:
+    """The direction, as long as it leans no more than a leg that is solved for, from plumb and from square to the
+    seat.
+    """
+    for vector in (direction.vector, seating.frame.turn_to_seat(direction.vector)):
+        lean = lean_of(vector, place.side, place.end).resultant_deg if vector[2] < 0.0 else 90.0
+        if lean > MOST_LEAN_DEG:
+            rule = f"the leg would lean {lean:.1f}°, and {MOST_LEAN_DEG:g}° is the most"
+            raise CannotSolve(rule, "look at the figures again")
+    return direction
 
 
 def _from_picture(picture: Picture, place: Place, pictured_x_mm: float, units: Units) -> Direction:

@@ -18,10 +18,11 @@ measure to. On an outline that curves, another point of the foot may come nearer
 from __future__ import annotations
 
 import math
+from bisect import bisect_right
 from collections.abc import Callable
 from dataclasses import dataclass
 from functools import cached_property
-from itertools import pairwise
+from itertools import accumulate, pairwise
 from typing import NamedTuple
 
 from jigs.frames import Vector
@@ -33,6 +34,10 @@ Slopes = tuple[float, float]  # X and Y of a direction (X, Y, -1) in the floor f
 
 # An end of the outline narrower than this is a point.
 POINTED_MM = 1e-3
+# An outline of more parts takes longer to measure to than anyone waits.
+MOST_PARTS = 300
+# More parts of an outline than this are looked at less finely each.
+MANY_PARTS = 64
 # Stretches of outline shorter than this are left out; the nearest one stands for them.
 SHORTEST_MM = 1e-9
 _SAMPLES = {Line: 24, Arc: 48, Cubic: 24}
@@ -79,8 +84,7 @@ class Foot:
         return (sign * slope, aside) if a == 0 else (aside, sign * slope)
 
 
-@dataclass(frozen=True)
-class Stretch:
+class Stretch(NamedTuple):
     """A part of one segment along which coordinate `other` only grows or only falls."""
 
     point: Callable[[float], Point]
@@ -116,10 +120,28 @@ class Edge:
     def reach_mm(self, station: float) -> float:
         """The outermost coordinate of the outline at this place of the other axis; past its end, that of its end."""
         a, b = self.toward.axis, self.toward.other
-        holding = [s for s in self.stretches if s.low <= station <= s.high]
+        holding = self._holding(station)
         if not holding:
             holding = [min(self.stretches, key=lambda s: max(s.low - station, station - s.high))]
         return self.toward.sign * max(self.toward.sign * s.point(s.parameter(station, b))[a] for s in holding)
+
+    def _holding(self, station: float) -> list[Stretch]:
+        """The stretches that reach over this place: among those that begin before it, back to where none does."""
+        found = []
+        for k in range(bisect_right(self._lows, station) - 1, -1, -1):
+            if self._highest_so_far[k] < station:
+                break
+            if self.stretches[k].high >= station:
+                found.append(self.stretches[k])
+        return found
+
+    @cached_property
+    def _lows(self) -> list[float]:
+        return [s.low for s in self.stretches]
+
+    @cached_property
+    def _highest_so_far(self) -> list[float]:
+        return list(accumulate((s.high for s in self.stretches), max))
 
     def measures(self, station: float) -> bool:
         """Whether there is outline to measure to: the place is not past a pointed or round end."""
@@ -151,7 +173,7 @@ class Edge:
     def within(self, low: float, high: float) -> list[Stretch]:
         """The stretches between two places of the other axis, straight ends drawn on as far."""
         b = self.toward.other
-        parts = [part for s in self.stretches if (part := _clipped(s, low, high, b))]
+        parts = _thinned([part for s in self.stretches if (part := _clipped(s, low, high, b))])
         ends = ((self.stretches[0].low, low), (self._high, high))
         for pointed, (end, far) in zip(self.pointed, ends, strict=True):
             if not pointed and (far - end) * (1 if far == high else -1) > 0.0:
@@ -167,6 +189,13 @@ class Edge:
 def edge(curve: Curve, pitch_deg: float, toward: Toward) -> Edge:
     """The edge of a seat's outline, given in the seat's own plan."""
     return Edge(mapped(curve, Affine(1.0, 0.0, 0.0, math.cos(math.radians(pitch_deg)), 0.0, 0.0)), toward)
+
+
+def _thinned(parts: list[Stretch]) -> list[Stretch]:
+    """Fewer samples of each of very many stretches, so that an outline of a thousand parts takes no longer."""
+    if len(parts) <= MANY_PARTS:
+        return parts
+    return [s._replace(samples=max(3, s.samples * MANY_PARTS // len(parts))) for s in parts]
 
 
 def _clipped(s: Stretch, low: float, high: float, other: int) -> Stretch | None:

@@ -19,7 +19,7 @@ from itertools import pairwise
 
 from jigs.frames import SeatFrame, Vector
 from jigs.inside import Edge, Foot, Slopes, Toward, edge
-from jigs.knowns import ANGLES, EQUAL_FEET
+from jigs.knowns import ANGLES, EQUAL_FEET, MOST_LEAN_DEG
 from jigs.legs import Lean, lean_of
 from jigs.quantities import Units
 from jigs.roots import Polynomial, plus, product, real_roots, value
@@ -27,8 +27,7 @@ from jigs.seats import Blank
 from jigs.starts import foot_between
 from layout.geometry import Point, cos_sin
 
-# Legs are looked for up to this lean, from plumb and from the line square to the seat.
-MOST_LEAN_DEG = 60.0
+# Legs are looked for up to this slope, from plumb and from the line square to the seat.
 STEEPEST = math.tan(math.radians(MOST_LEAN_DEG))
 _SLACK = 1e-9
 

@@ -21,6 +21,8 @@ KNOWNS = (
     "inside_end",
     "axis",
 )
+# A leg leans no more than this from plumb or from square to the seat: further, nothing that is bored holds (practice).
+MOST_LEAN_DEG = 60.0
 # The foot's place between those of two neighbours; it comes with the two feet and not with a number.
 EQUAL_FEET = "equal_from"
 ANGLES = frozenset({"splay", "rake", "resultant", "sightline"})

@@ -12,7 +12,7 @@ from dataclasses import replace
 
 from jigs.bores import mouth_mm
 from jigs.directions import Direction, Place, Seating, leg_direction, post_direction
-from jigs.knowns import CannotSolve
+from jigs.knowns import MOST_LEAN_DEG, CannotSolve
 from jigs.legs import Axis, AxisRun, Face, Kind, Leg, follow, follow_up, on_local_face
 from jigs.problems import Caution, Problem
 from jigs.spec import ON_CENTRE_LINE_MM, Furniture
@@ -23,6 +23,9 @@ from layout.geometry import Point
 ON_MIDDLE_MM = 1e-6
 # Slopes that differ by less are one: the solver's own rounding is a thousandth of it.
 SAME_SLOPES = 1e-10
+# A foot's thickness is found when it changes by no more than this; each round brings it a hundred times nearer.
+SAME_FOOT_MM, MOST_ROUNDS = 1e-10, 20
+_OTHER_SIDE = {"left": "right", "right": "left"}
 
 _Drawn = Callable[[Place, str], Leg]
 
@@ -63,32 +66,46 @@ class Members:
 
     def _legs_of(self, index: int, spec: LegSpec, feet: Mapping[str, Point]) -> Iterator[Leg]:
         place = f"legs[{index}]"
-        neighbours = self._neighbours(place, spec, feet)
-        if spec.equal_from is not None and neighbours is None:
+        if not self._knows_neighbours(place, spec, feet):
             return
 
         drawn: list[Direction] = []
 
         def draw(where: Place, name: str) -> Leg:
-            direction = leg_direction(spec, where, self.seating, neighbours)
-            direction = _as_twin_of(drawn[0], direction) if drawn else direction
+            neighbours = _neighbours(spec, where, feet)
+            direction, leg = self._settled(spec, place, name, where, neighbours)
+            if drawn and (twin := _as_twin_of(drawn[0], direction)) is not direction:
+                direction, leg = twin, self._leg(spec, place, name, where, twin)
             drawn.append(direction)
-            self._note(place, direction, name, spec)
-            return self._leg(spec, place, name, where, direction)
+            self._note(place, direction, name, "picture" if spec.picture is not None else "two-ways")
+            return leg
 
         yield from self._twins(place, spec, draw)
 
-    def _neighbours(self, place: str, spec: LegSpec, feet: Mapping[str, Point]) -> tuple[Point, Point] | None:
+    def _settled(
+        self, spec: LegSpec, place: str, name: str, where: Place, neighbours: tuple[Point, Point] | None
+    ) -> tuple[Direction, Leg]:
+        """A leg and its direction. A foot whose thickness is not said is as thick as the mortise's mouth, which depends
+        a little on the lean: the two are brought together.
+        """
+        foot_mm = spec.foot_diameter
+        for _ in range(MOST_ROUNDS):
+            direction = leg_direction(spec, where, self.seating, neighbours, foot_mm)
+            leg = self._leg(spec, place, name, where, direction)
+            if abs(leg.foot_diameter_mm - foot_mm) <= SAME_FOOT_MM:
+                break
+            foot_mm = leg.foot_diameter_mm
+        return direction, leg
+
+    def _knows_neighbours(self, place: str, spec: LegSpec, feet: Mapping[str, Point]) -> bool:
         if spec.equal_from is None:
-            return None
+            return True
         unknown = [name for name in spec.equal_from if name not in feet]
         if unknown:
             cure = f"name two of {', '.join(feet) or 'the legs that stand without it'}"
             rule = "is no leg whose foot is known without this one"
             self.problems.append(Problem(f"{place}.equal_from", unknown[0], rule, cure))
-            return None
-        one, other = spec.equal_from
-        return feet[one], feet[other]
+        return not unknown
 
     def _twins(self, place: str, spec: LegSpec | PostSpec, draw: _Drawn) -> Iterator[Leg]:
         end = self._end(spec)
@@ -117,9 +134,8 @@ class Members:
             return 1 if spec.at[1] > middle else -1
         return 1 if spec.rake == 0.0 else None
 
-    def _note(self, place: str, direction: Direction, name: str, spec: LegSpec) -> None:
+    def _note(self, place: str, direction: Direction, name: str, code: str) -> None:
         if direction.note:
-            code = "picture" if spec.picture is not None else "two-ways"
             self.notes.append(Caution(code, place, f"{name}: {direction.note}"))
 
     def _leg(self, spec: LegSpec, place: str, name: str, where: Place, direction: Direction) -> Leg:
@@ -168,6 +184,7 @@ class Members:
     def _posts_of(self, place: str, spec: PostSpec) -> Iterator[Leg]:
         def draw(where: Place, name: str) -> Leg:
             direction = post_direction(spec, where, self.seating)
+            self._note(place, direction, name, "two-ways")
             axis = Axis(where.at_mm, direction.vector, where.side, where.end)
             run, z = follow_up(axis, self.seating.frame, self.seating.thickness_mm, spec.length)
             post = replace(_member(place, name, where, run, spec.mortise, "top", "post"), foot_z_mm=z)
@@ -176,7 +193,7 @@ class Members:
         yield from self._twins(place, spec, draw)
 
     def _row(self, place: str, spec: SpindleSpec) -> Iterator[Leg]:
-        from jigs.rows import MOST_LEAN_DEG, rises, row_places  # noqa: PLC0415 - few seats have spindles
+        from jigs.rows import rises, row_places  # noqa: PLC0415 - few seats have spindles
 
         frame = self.seating.frame
         try:
@@ -209,6 +226,24 @@ def _as_twin_of(first: Direction, second: Direction) -> Direction:
     x, y, z = first.vector
     image = (-x, y, z)
     return second._replace(vector=image) if math.dist(second.vector, image) <= SAME_SLOPES else second
+
+
+def _neighbours(spec: LegSpec, where: Place, feet: Mapping[str, Point]) -> tuple[Point, Point] | None:
+    """The feet that a leg's own is to be equally far from; for the twin of the leg that the table places, their
+    twins'.
+    """
+    if spec.equal_from is None:
+        return None
+    mirrored = spec.mirror and where.at_mm[0] * spec.at[0] < 0.0
+    one, other = (_twin_name(name, feet) if mirrored else name for name in spec.equal_from)
+    return feet[one], feet[other]
+
+
+def _twin_name(name: str, names: Mapping[str, Point]) -> str:
+    """The same part on the other side; a part without a twin is its own."""
+    stem, _, side = name.rpartition(" ")
+    twin = f"{stem} {_OTHER_SIDE.get(side, side)}"
+    return twin if twin in names else name
 
 
 def _side(x: float) -> int:

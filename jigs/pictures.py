@@ -12,7 +12,7 @@ import math
 from dataclasses import dataclass
 from typing import Literal
 
-from jigs.knowns import CannotSolve, decimals
+from jigs.knowns import MOST_LEAN_DEG, CannotSolve, decimals
 from jigs.quantities import Units, format_length
 
 Pixel = tuple[float, float]
@@ -22,8 +22,6 @@ TakenFrom = Literal["right", "left"]
 POINTING_PX = 2.0
 # Lines must be this many pointing errors long: shorter ones say nothing, and their errors do not add up evenly.
 SHORTEST_IN_ERRORS = 10.0
-# A line that is drawn as a leg leans no more than this.
-MOST_LEAN_DEG = 60.0
 # How far to stand back: the nearer, the more a leg that comes toward the camera seems to lean outward (practice).
 STAND_BACK_HEIGHTS = 10
 
@@ -78,7 +76,7 @@ def from_picture(
     if not (pointing_px >= 0.0 and math.isfinite(pointing_px)):
         raise CannotSolve(f"a pointing error of {pointing_px:g} px is none", "give 0 or more")
     if side and front is None:
-        raise CannotSolve("splay needs a front picture", "point at the leg in one, or give splay")
+        raise CannotSolve("splay needs a front picture", "point at the leg in one")
     to_right, splay_pm = _lean(front, pointing_px, "front") if front and side else (0.0, 0.0)
     to_right_in_side, rake_pm = _lean(side_view, pointing_px, "side")
     to_back = to_right_in_side if taken_from == "right" else -to_right_in_side

@@ -11,9 +11,20 @@ from collections.abc import Callable, Iterator, Mapping, Sequence
 from dataclasses import dataclass
 from itertools import pairwise
 
-from jigs.inside import Slopes
-from jigs.known_curves import CENTRED, MOST_LEAN_DEG, STEEPEST, Case, Known, Piece, applies, curve, is_leg, off_by
-from jigs.knowns import EQUAL_FEET, SETTLES, CannotSolve, listed, named, partners, places_for, rounded, said
+from jigs.inside import MANY_PARTS, Slopes
+from jigs.known_curves import CENTRED, STEEPEST, Case, Known, Piece, applies, curve, is_leg, off_by
+from jigs.knowns import (
+    EQUAL_FEET,
+    MOST_LEAN_DEG,
+    SETTLES,
+    CannotSolve,
+    listed,
+    named,
+    partners,
+    places_for,
+    rounded,
+    said,
+)
 from jigs.meeting import solutions
 from jigs.roots import Flat, lowest
 
@@ -164,11 +175,13 @@ def _missed(case: Case, name: str, more: float, given: float) -> str:
 
 def _nearest(case: Case, along: tuple[str, float], wanted: tuple[str, float], known: Known) -> Near | None:
     """What becomes of the wanted known along the curve of another; None where no leg has that other."""
-    misses = [miss for piece in known.pieces() for miss in _misses(case, along, wanted, piece)]
+    pieces = known.pieces()
+    finer = _FINER if len(pieces) <= MANY_PARTS else 1
+    misses = [miss for piece in pieces for miss in _misses(case, along, wanted, piece, finer)]
     return Near(min(misses, key=abs), max(misses) - min(misses) <= AGREE) if misses else None
 
 
-def _misses(case: Case, along: tuple[str, float], wanted: tuple[str, float], piece: Piece) -> list[float]:
+def _misses(case: Case, along: tuple[str, float], wanted: tuple[str, float], piece: Piece, finer: int) -> list[float]:
     """How far off the wanted known is at samples of the piece, at the limits of the legs there, where it is nearest."""
 
     def counts(t: float) -> bool:
@@ -177,7 +190,7 @@ def _misses(case: Case, along: tuple[str, float], wanted: tuple[str, float], pie
     def miss(t: float) -> float:
         return off_by(case, *wanted, piece.at(t))
 
-    count = piece.samples * _FINER
+    count = piece.samples * finer
     times = [piece.t0 + (piece.t1 - piece.t0) * k / count for k in range(count + 1)]
     marks = [(t, counts(t)) for t in times]
     legs = [t for t, good in marks if good]

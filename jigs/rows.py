@@ -8,11 +8,9 @@ from __future__ import annotations
 import math
 
 from jigs.frames import Vector
-from jigs.knowns import CannotSolve
+from jigs.knowns import MOST_LEAN_DEG, CannotSolve
 from layout.geometry import Point
 
-# A spindle leans no more than this from square to the seat, as a leg that is solved for does not.
-MOST_LEAN_DEG = 60.0
 # An arc that bows by less is a straight line.
 STRAIGHT_MM = 1e-9
 

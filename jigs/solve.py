@@ -25,9 +25,9 @@ from dataclasses import dataclass
 from itertools import combinations
 
 from jigs.frames import Vector
-from jigs.inside import Slopes
-from jigs.known_curves import CENTRED, MOST_LEAN_DEG, Case, Known, Stance, curve, off_by
-from jigs.knowns import ANGLES, EQUAL_FEET, KNOWNS, SIDEWAYS, CannotSolve, decimals, listed, named
+from jigs.inside import MOST_PARTS, Slopes
+from jigs.known_curves import CENTRED, Case, Known, Stance, curve, off_by
+from jigs.knowns import ANGLES, EQUAL_FEET, KNOWNS, MOST_LEAN_DEG, SIDEWAYS, CannotSolve, decimals, listed, named
 from jigs.meeting import SAME_SLOPE, solutions
 from jigs.quantities import Units
 from jigs.refusals import AGREE, disagree, never_meet, sideways, too_few
@@ -82,6 +82,9 @@ def solve(
     """
     case = Case(stance, from_seat, blank, between, units)
     given = _readable(case, {EQUAL_FEET: 0.0, **knowns} if between else dict(knowns))
+    upright = _upright(case, given)
+    if upright is not None:
+        return upright
     pairs = _pairs(case, given)
     if not pairs:
         raise too_few(case, given)
@@ -89,6 +92,18 @@ def solve(
     x, y = found[0]
     direction = (x if stance.side else 0.0, y, -1.0)
     return Solution(direction, len(found) - 1, _note(case, found))
+
+
+def _upright(case: Case, given: Mapping[str, float]) -> Solution | None:
+    """The one leg of resultant 0, where all else that is known agrees with it; it has no sightline to be known."""
+    if given.get("resultant") != 0.0 or "sightline" in given:
+        return None
+    x, y, z = case.stance.frame.turn_to_floor((0.0, 0.0, -1.0)) if case.from_seat else (0.0, 0.0, -1.0)
+    slopes = (x / -z, y / -z)
+    others = [name for name in given if name != "resultant"]
+    agree = all(abs(off_by(case, name, given[name], slopes)) <= AGREE for name in others)
+    needed = 0 if case.stance.side == 0 else 1
+    return Solution((slopes[0], slopes[1], -1.0), 0, "") if agree and len(others) >= needed else None
 
 
 def _readable(case: Case, knowns: dict[str, float]) -> dict[str, float]:
@@ -117,6 +132,9 @@ def _refuse_value(case: Case, name: str, given: float) -> None:
     if name in ANGLES and name != "sightline" and not least <= given <= MOST_LEAN_DEG:
         rule = f"{named(name, given, case.units)} is not between {least:g} and {MOST_LEAN_DEG:g} degrees"
         raise CannotSolve(rule, "a resultant is never negative" if -MOST_LEAN_DEG <= given < least else "")
+    if name.startswith("inside_") and len(case.blank.curve) > MOST_PARTS:
+        rule = f"{name} is measured to an outline of {MOST_PARTS} lines and curves at most"
+        raise CannotSolve(f"{rule}, and this one has {len(case.blank.curve)}", "simplify it, or give splay and rake")
     if name.startswith("inside_") and case.foot.radius_mm >= case.foot.mortise[2]:
         raise CannotSolve(f"{name} needs a foot that is narrower than the leg is long", "give splay and rake")
 
@@ -174,7 +192,7 @@ def _note(case: Case, found: list[Slopes]) -> str:
         return ""
     taken, *others = (_leaning(case, slopes) for slopes in found)
     tie = math.hypot(*found[1]) - math.hypot(*found[0]) <= SAME_SLOPE
-    have = f"{'Two' if len(found) == 2 else len(found)} legs have this"
+    have = f"{'Two' if len(found) == 2 else len(found)} leans have this"
     why = f"of two that are as near to plumb, {_outward(case, found)}" if tie else "the one nearest to plumb"
     rest = "the other is" if len(others) == 1 else "the others are"
     return f"{have}. Taken is {why}: {taken}; {rest} {listed(others)}."

@@ -10,12 +10,10 @@ import math
 from dataclasses import dataclass
 
 from jigs.frames import Vector
-from jigs.knowns import CannotSolve, decimals
+from jigs.knowns import MOST_LEAN_DEG, CannotSolve, decimals
 from jigs.legs import lean_of
 from layout.geometry import Point, cos_sin
 
-# A leg leans no more than this, here as in `solve`.
-MOST_LEAN_DEG = 60.0
 # Plumb heights measured on a chair lie at least this far apart: at 50 mm, 1 mm is already more than a degree.
 LEAST_APART_MM = 50.0
 # A leg on the centre line that is measured to lean sideways by more is no such leg, or was measured wrong.
@@ -124,9 +122,11 @@ def _bearing(count: int, k: int, first_deg: float | None) -> float:
 def _ring_leg(name: str, bearing_deg: float, radius_mm: float, centre: Point, tangent: float) -> RingLeg:
     c, s = cos_sin(bearing_deg)
     at = (centre[0] + radius_mm * c, centre[1] + radius_mm * s)
-    side = 0 if abs(at[0]) <= ON_LINE_MM else (1 if at[0] > 0.0 else -1)
     end = -1 if radius_mm * s < -ON_LINE_MM else 1
     direction = (tangent * c, tangent * s, -1.0)
+    # A ring that stands to one side may have a leg on the centre line that leans off it.
+    aside = at[0] if abs(at[0]) > ON_LINE_MM else direction[0]
+    side = 0 if abs(aside) <= ON_LINE_MM else (1 if aside > 0.0 else -1)
     lean = lean_of(direction, side, end)
     return RingLeg(name, at, side, end, bearing_deg, lean.splay_deg, lean.rake_deg, direction)
 

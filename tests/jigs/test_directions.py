@@ -3,12 +3,14 @@
 from __future__ import annotations
 
 import math
+import re
 from itertools import combinations
 
 import numpy as np
 import pytest
 from scipy.spatial.transform import Rotation
 
+from jigs.bores import mouth_mm
 from tests.jigs.conftest import FACES
 from tests.jigs.furnished import face_z, four_angles, furnished, off_line_mm, refusals, tilt, to_floor
 
@@ -59,7 +61,7 @@ def inside(assembly, leg, foot, way, name):
     two = np.cross(way, one)
     ends = []
     for generator in (one, two):
-        square = FOOT / 2 * generator / np.linalg.norm(generator)
+        square = leg.foot_diameter_mm / 2 * generator / np.linalg.norm(generator)
         ends.append(square - way * square[2] / way[2])
     k, sign = (0, leg.side) if name == "inside_side" else (1, leg.end)
     turn = math.atan2(sign * ends[1][k], sign * ends[0][k])
@@ -199,7 +201,7 @@ def test_a_leg_on_the_centre_line_needs_its_side_picture_only():
     assert part.floor.rake_deg == pytest.approx(11.0, abs=FORWARD)
     assert part.foot_mm[0] == 0.0
     assert refusals([{**LEG, "picture": {"side": view}}], **OVAL) == [
-        "legs[0]: splay needs a front picture; point at the leg in one, or give splay"
+        "legs[0]: splay needs a front picture; point at the leg in one"
     ]
 
 
@@ -354,3 +356,104 @@ def test_of_two_legs_that_have_what_was_said_the_other_is_told():
     made = furnished([{**LEG, "resultant": 14, "splay": 9}], **OVAL, pitch=4)
     assert [(note.code, note.where) for note in made.notes] == [("two-ways", "legs[0]")] * 2
     assert all("nearest to plumb" in note.text or "rakes outward" in note.text for note in made.notes)
+
+
+# ---------------------------------------------------------------- what a table leaves to be found
+
+
+@pytest.mark.parametrize(("side", "end"), [(10, 10), (0, 0), (25, 4)])
+def test_a_foot_as_thick_as_a_reamed_mouth_stands_as_far_inside_as_was_asked(side, end):
+    """The mouth's width follows from the lean, and the foot's from the mouth."""
+    leg = {"name": "front", "at": [115, 125], "mirror": True, "mortise": {"bit": 16, "taper": 6}}
+    made = furnished([{**leg, "inside_side": side, "inside_end": end}], **OVAL, pitch=4)
+    for part in made.legs:
+        assert part.foot_diameter_mm == pytest.approx(mouth_mm(part), abs=1e-9)
+        assert part.foot_diameter_mm > 20.0
+        found = [measured(made, part, name) for name in ("inside_side", "inside_end")]
+        assert found == pytest.approx([side, end], abs=INSIDE)
+
+
+def test_a_measured_chair_that_leans_more_than_any_is_refused():
+    leg = {**LEG, "mortise": {"bit": 16, "taper": 12}}
+    steep = {"heights": [100, 160], "across": [150, 150], "along": [0, 600]}
+    (line,) = refusals([{**leg, "measured": steep}])
+    assert re.fullmatch(r"legs\[0\]: the leg would lean 8\d\.\d°, and 60° is the most; look at the figures again", line)
+
+
+def test_twins_between_twins_are_mirrored():
+    front = {**LEG, "name": "front", "at": [150, 60], "splay": 6, "rake": 5}
+    back = {**LEG, "name": "back", "at": [90, 300], "splay": 4, "rake": 14}
+    middle = {**LEG, "name": "middle", "at": [140, 190], "end": "back", "splay": 9}
+    middle["equal_from"] = ["front left", "back left"]
+    for at in ([140, 190], [-140, 190]):
+        made = furnished([front, back, {**middle, "at": at}], width=500, depth=420)
+        left, right = (next(part for part in made.legs if part.name == f"middle {side}") for side in ("left", "right"))
+        assert (left.foot_mm[0], left.foot_mm[1]) == pytest.approx((-right.foot_mm[0], right.foot_mm[1]), abs=1e-9)
+        # The table's neighbours are those of the leg that it places; its twin has their twins.
+        placed, names = (right, ("front left", "back left")) if at[0] > 0 else (left, ("front left", "back left"))
+        feet = {part.name: part.foot_mm for part in made.legs}
+        apart = [math.dist(placed.foot_mm, feet[name]) for name in names]
+        assert apart[0] == pytest.approx(apart[1], abs=1e-8)
+
+
+def test_a_leg_on_the_centre_line_does_not_aim_off_it():
+    back = {**LEG, "name": "back", "at": [0, 300], "mirror": False}
+    (line,) = refusals([{**back, "aim_at": [100, 100, 1300]}])
+    assert line == (
+        "legs[0]: the point aimed at is off the centre line, and the leg on it would lean sideways; "
+        "aim at a point with x = 0, or move the mortise"
+    )
+
+
+def test_a_ring_beside_the_centre_line_has_legs_that_lean_off_it():
+    ring = {"name": "r", "count": 6, "circle": 240, "centre": [60, 180], "first": 0, "resultant": 10, "mortise": 20}
+    front = {**LEG, "splay": 2, "rake": 2, "at": [200, 40]}
+    made = furnished([front], width=500, depth=420, shape="rectangle", tables={"rings": [ring]})
+    on_line = [part for part in made.legs if abs(part.underside_mm[0]) < 1e-6]
+    assert len(on_line) == 2
+    for part in on_line:
+        assert part.side == -1
+        assert part.foot_mm[0] < -20.0
+        assert part.drill.splay_deg > 1.0
+
+
+def test_posts_that_two_leans_would_do_for_are_told_as_legs_are():
+    post = {"name": "post", "at": [150, 300], "mirror": True, "splay": 5, "resultant": 12, "length": 300, "mortise": 19}
+    made = furnished([{**LEG, "splay": 6, "rake": 5}], width=500, depth=420, tables={"posts": [post]})
+    assert [(note.code, note.where) for note in made.notes] == [("two-ways", "posts[0]")] * 2
+
+
+@pytest.mark.parametrize("pitch", [-10, -3, 0, 3, 4.5, 7, 10, 20])
+def test_a_resultant_of_nought_is_square_to_what_it_is_measured_from(pitch):
+    back = {**LEG, "name": "back", "at": [0, 280], "mirror": False, "resultant": 0, "angles_from": "seat"}
+    (part,) = furnished([back], width=500, depth=420, pitch=pitch).legs
+    assert part.drill.resultant_deg == pytest.approx(0.0, abs=FORWARD)
+    plumb = {**back, "angles_from": "plumb"}
+    (part,) = furnished([plumb], width=500, depth=420, pitch=pitch).legs
+    assert part.floor.resultant_deg == pytest.approx(0.0, abs=FORWARD)
+
+
+@pytest.mark.parametrize(
+    ("more", "line"),
+    [
+        (
+            {"equal_from": ["back left", "back right"]},
+            "aim_at and equal_from both say how the leg leans; keep aim_at alone, or leave it out",
+        ),
+        ({"angles_from": "seat"}, "angles_from says nothing of a leg that is given by its aim_at; leave it out"),
+    ],
+)
+def test_what_stands_beside_a_start_and_says_nothing_is_refused(more, line):
+    back = {**LEG, "name": "back", "at": [120, 300], "splay": 5, "rake": 5}
+    found = refusals([{**LEG, "aim_at": [0, 180, 1300], **more}, back], **OVAL)
+    assert found == [f"legs[0]: {line}"]
+
+
+def test_an_outline_of_very_many_parts_is_no_outline_to_stand_inside_of():
+    points = [[200 * math.cos(k / 200 * math.pi), 200 + 200 * math.sin(k / 200 * math.pi)] for k in range(400)]
+    leg = {**LEG, "at": [90, 120], "inside_side": 10, "inside_end": 10}
+    (line,) = refusals([leg], shape="polygon", points=points, width=None, depth=None)
+    assert line == (
+        "legs[0]: inside_side is measured to an outline of 300 lines and curves at most, and this one has 400; "
+        "simplify it, or give splay and rake"
+    )

@@ -428,7 +428,7 @@ def test_two_legs_as_near_to_plumb_are_told_and_the_outward_one_is_taken():
     assert solution.others == 1
     assert lean_of(solution.direction, 1, -1).rake_deg == pytest.approx(rake, abs=1e-12)
     assert solution.note == (
-        "Two legs have this. Taken is of two that are as near to plumb, the one that rakes outward: "
+        "Two leans have this. Taken is of two that are as near to plumb, the one that rakes outward: "
         "splay 12°, rake 9.266°; the other is splay 12°, rake -9.266°."
     )
 
@@ -437,7 +437,7 @@ def test_of_two_legs_the_one_nearest_to_plumb_is_taken_and_said_so():
     solution = solve(PITCHED, {"splay": 12.0, "axis": 430.0}, False, SHARP)
     assert solution.others == 1
     assert solution.note == (
-        "Two legs have this. Taken is the one nearest to plumb: splay 12°, rake 18.826°; "
+        "Two leans have this. Taken is the one nearest to plumb: splay 12°, rake 18.826°; "
         "the other is splay 12°, rake -20.26°."
     )
 
