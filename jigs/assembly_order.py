@@ -253,8 +253,8 @@ def _closing(
 ) -> str:
     """How the last joints of a ring are closed."""
     names = _and([stretcher.name for stretcher in closed])
-    frames = [_and([leg for leg in legs if leg in group]) for group in groups]
-    made = "; ".join(frame for frame in frames if " and " in frame)
+    frames = [[leg for leg in legs if leg in group] for group in groups]
+    made = "; ".join(_and(frame) for frame in frames if len(frame) > 1)
     head = f"First join {made}. Then close the ring on {names}" if made else f"Close the ring on {names}"
     apart = f"their axes are {format_angle(angle_deg)} apart"
     if angle_deg <= PARALLEL_DEG:

@@ -252,7 +252,8 @@ def _crossed(assembly: Assembly) -> Iterator[Finding]:
         if leg.side and leg.foot_mm[0] * leg.side <= 0.0:
             text = "the foot stands on the other side of the centre line from its mortise; look at the sign of splay"
             yield Finding(leg, "crossed", text)
-        mortise = assembly.frame.to_floor((*leg.on_face(leg.drilled), 0.0))[1]
+        face_z = 0.0 if leg.drilled == "top" else -assembly.thickness_mm
+        mortise = assembly.frame.to_floor((*leg.on_face(leg.drilled), face_z))[1]
         if (mortise - middle) * leg.end > ON_MIDDLE_MM and (middle - leg.foot_mm[1]) * leg.end > ON_MIDDLE_MM:
             text = "the foot stands beyond the middle of the seat's depth from its mortise; look at the sign of rake"
             yield Finding(leg, "crossed", text)

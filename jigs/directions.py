@@ -118,7 +118,7 @@ def _started(spec: LegSpec, place: Place, seating: Seating) -> Direction:
         return _from_picture(spec.picture, place, spec.at[0], seating.units)
     if spec.measured is not None:
         m = spec.measured
-        splay, rake = from_copy(m.heights, m.across, m.along, place.side, place.end)
+        splay, rake = from_copy(m.heights, m.across, m.along, place.side, place.end, seating.units)
         return Direction(direction_of(splay, rake, place.side, place.end))
     assert spec.aim_at is not None  # one of the three starts is given
     x, y, z = spec.aim_at
@@ -127,7 +127,7 @@ def _started(spec: LegSpec, place: Place, seating: Seating) -> Direction:
         raise CannotSolve(rule, "aim at a point with x = 0, or move the mortise")
     # A twin aims at the twin of the point.
     point = (-x if spec.mirror and place.at_mm[0] * spec.at[0] < 0.0 else x, y, z)
-    return Direction(aim(point, _stance(place, seating, spec.foot_diameter).mortise))
+    return Direction(aim(point, _stance(place, seating, spec.foot_diameter).mortise, seating.units))
 
 
 def _leaning_no_more(direction: Direction, place: Place, seating: Seating) -> Direction:

@@ -197,7 +197,7 @@ def follow(axis: Axis, frame: SeatFrame, thickness_mm: float, drilled_from_top: 
     underside = (x + shift[0], y + shift[1]) if drilled_from_top else (x, y)
     leaves = frame.to_floor((*underside, -thickness_mm))
     if leaves[2] <= 0.0:
-        raise ValueError(f"stands where the underside is {abs(leaves[2]):.1f} mm below the floor")
+        raise ValueError("stands where the seat's underside is on the floor or below it")
     lengths = leaves[2] / -axis.direction[2]
     foot = further(leaves, axis.direction, lengths)
     return AxisRun(

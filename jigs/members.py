@@ -165,7 +165,12 @@ class Members:
                 if seat.pitch:
                     raise CannotSolve("feet_circle is for a level seat", "give the resultant from square to the seat")
                 resultant = ring_resultant_deg(
-                    spec.circle, spec.feet_circle, seat.height, seat.thickness, self.seating.drilled_from_top
+                    spec.circle,
+                    spec.feet_circle,
+                    seat.height,
+                    seat.thickness,
+                    self.seating.drilled_from_top,
+                    self.seating.units,
                 )
             for leg in ring(spec.count, spec.circle, centre, resultant, spec.first):
                 x, y, z = self.seating.frame.turn_to_floor(leg.toward_foot)
@@ -197,7 +202,10 @@ class Members:
 
         frame = self.seating.frame
         try:
-            deck, crest = (row_places(row.width, row.back, row.bow, spec.count) for row in (spec.deck, spec.crest))
+            deck, crest = (
+                row_places(row.width, row.back, row.bow, spec.count, self.seating.units)
+                for row in (spec.deck, spec.crest)
+            )
         except CannotSolve as error:
             self.problems.append(Problem(place, "", error.rule, error.cure))
             return

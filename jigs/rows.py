@@ -1,6 +1,6 @@
 """Places evenly along a straight or arc line in plan: the deck of a row of spindles, and its crest.
 
-Owns the spacing, and how flat a spindle may lie. Imports `frames`, `knowns` and `layout.geometry`.
+Owns the spacing, and how flat a spindle may lie. Imports `frames`, `knowns`, `quantities` and `layout.geometry`.
 """
 
 from __future__ import annotations
@@ -9,13 +9,14 @@ import math
 
 from jigs.frames import Vector
 from jigs.knowns import MOST_LEAN_DEG, CannotSolve
+from jigs.quantities import Units, format_length
 from layout.geometry import Point
 
 # An arc that bows by less is a straight line.
 STRAIGHT_MM = 1e-9
 
 
-def row_places(width_mm: float, back_mm: float, bow_mm: float, count: int) -> tuple[Point, ...]:
+def row_places(width_mm: float, back_mm: float, bow_mm: float, count: int, units: Units = "mm") -> tuple[Point, ...]:
     """`count` places from left to right, as far from each other along the line as each from the next.
 
     The ends are `width_mm` apart, to either side of the centre line; the middle lies `back_mm` from the front edge and
@@ -24,9 +25,8 @@ def row_places(width_mm: float, back_mm: float, bow_mm: float, count: int) -> tu
     """
     half = width_mm / 2
     if abs(bow_mm) > half:
-        raise CannotSolve(
-            f"a bow of {abs(bow_mm):.1f} mm is more than half of the width, {half:.1f} mm", "give a flatter arc"
-        )
+        bow, most = format_length(abs(bow_mm), units), format_length(half, units)
+        raise CannotSolve(f"a bow of {bow} is more than half of the width, {most}", "give a flatter arc")
     shares = [2 * k / (count - 1) - 1 for k in range(count)]
     if abs(bow_mm) < STRAIGHT_MM:
         return tuple((half * share, back_mm) for share in shares)

@@ -1,6 +1,6 @@
 """How a leg starts in the trade: a chair to copy, a point to aim at, a ring of legs. Pictures are `pictures`'.
 
-Owns these ways to a leg's angles. Imports `frames`, `legs`, `knowns`, `layout.geometry`; no spec is read.
+Owns these ways to a leg's angles. Imports `frames`, `legs`, `knowns`, `quantities`, `layout.geometry`; no spec is read.
 Signs and frames as in `legs`: splay and rake positive outward, directions from mortise to foot with z = -1.
 """
 
@@ -12,6 +12,7 @@ from dataclasses import dataclass
 from jigs.frames import Vector
 from jigs.knowns import MOST_LEAN_DEG, CannotSolve, decimals
 from jigs.legs import lean_of
+from jigs.quantities import Units, format_length
 from layout.geometry import Point, cos_sin
 
 # Plumb heights measured on a chair lie at least this far apart: at 50 mm, 1 mm is already more than a degree.
@@ -29,6 +30,7 @@ def from_copy(
     along_mm: tuple[float, float],
     side: int,
     end: int,
+    units: Units = "mm",
 ) -> tuple[float, float]:
     """Splay and rake in degrees of a leg of a standing chair, measured at two heights above the floor, in any order.
 
@@ -40,8 +42,9 @@ def from_copy(
         raise CannotSolve("a measure of the chair is not a number")
     drop = heights_mm[0] - heights_mm[1]
     if abs(drop) < LEAST_APART_MM:
-        rule = f"the two heights are only {decimals(abs(drop))} mm apart"
-        raise CannotSolve(rule, f"measure at least {LEAST_APART_MM:g} mm apart, the further the better")
+        rule = f"the two heights are only {format_length(abs(drop), units)} apart"
+        least = format_length(LEAST_APART_MM, units)
+        raise CannotSolve(rule, f"measure at least {least} apart, the further the better")
     splay = math.degrees(math.atan((across_mm[1] - across_mm[0]) / drop))
     rake = math.degrees(math.atan(end * (along_mm[1] - along_mm[0]) / drop))
     if side == 0 and abs(splay) > STRAY_DEG:
@@ -50,7 +53,7 @@ def from_copy(
     return (splay if side else 0.0, rake)
 
 
-def aim(point_floor_mm: Vector, mortise_floor_mm: Vector) -> Vector:
+def aim(point_floor_mm: Vector, mortise_floor_mm: Vector, units: Units = "mm") -> Vector:
     """The direction from a point above the seat through the mortise's centre to the foot; both in the floor frame.
 
     Raises CannotSolve where the point is not above the mortise, or so low that the leg leans more than MOST_LEAN_DEG.
@@ -58,9 +61,12 @@ def aim(point_floor_mm: Vector, mortise_floor_mm: Vector) -> Vector:
     rise = point_floor_mm[2] - mortise_floor_mm[2]
     x, y = (mortise_floor_mm[k] - point_floor_mm[k] for k in (0, 1))
     least = math.hypot(x, y) / math.tan(math.radians(MOST_LEAN_DEG))
-    cure = f"aim at a point more than {decimals(mortise_floor_mm[2] + least)} mm above the floor"
+    # A little more than is needed, so that it does however the length is rounded.
+    cure = (
+        f"aim at a point {format_length(math.ceil(mortise_floor_mm[2] + least + 0.5), units)} or more above the floor"
+    )
     if not rise > 0.0:
-        raise CannotSolve(f"the point aimed at is {decimals(-rise)} mm below the mortise, not above it", cure)
+        raise CannotSolve(f"the point aimed at is {format_length(-rise, units)} below the mortise, not above it", cure)
     if rise < least:
         raise CannotSolve(f"the point aimed at is so low that the leg would lean more than {MOST_LEAN_DEG:g}°", cure)
     return (x / rise, y / rise, -1.0)
@@ -137,6 +143,7 @@ def ring_resultant_deg(
     height_mm: float,
     thickness_mm: float,
     drilled_from_top: bool,
+    units: Units = "mm",
 ) -> float:
     """The resultant of a ring whose feet stand on a circle of that diameter; for a level seat, height to its top face.
 
@@ -151,10 +158,9 @@ def ring_resultant_deg(
     resultant = math.degrees(math.atan2(run, drop))
     if abs(resultant) > MOST_LEAN_DEG:
         most = circle_diameter_mm + 2 * drop * math.tan(math.radians(MOST_LEAN_DEG))
-        rule = (
-            f"feet on a circle of {decimals(foot_circle_diameter_mm)} mm make legs that lean {decimals(resultant, 1)}°"
-        )
-        raise CannotSolve(rule, f"give less than {decimals(most)} mm")
+        circle = format_length(foot_circle_diameter_mm, units)
+        rule = f"feet on a circle of {circle} make legs that lean {decimals(resultant, 1)}°"
+        raise CannotSolve(rule, f"give {format_length(math.floor(most - 0.5), units)} or less")
     return resultant
 
 

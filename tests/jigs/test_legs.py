@@ -329,7 +329,7 @@ def test_a_direction_that_does_not_run_down_is_refused():
 def test_a_seat_whose_underside_is_on_or_below_the_floor_is_refused():
     axis = Axis((40.0, 60.0), direction_of(5.0, 5.0, 1, -1), 1, -1)
     for thickness in (150.0, 170.0):
-        with pytest.raises(ValueError, match=f"underside is {thickness - 150.0:.1f} mm below the floor"):
+        with pytest.raises(ValueError, match="underside is on the floor or below it"):
             follow(axis, SeatFrame(0.0, 150.0), thickness, drilled_from_top=False)
 
 
