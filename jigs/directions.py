@@ -24,6 +24,8 @@ if TYPE_CHECKING:
 
 # Knowns that a table may give, by the keys that name them.
 _ANGLES = ("splay", "rake", "resultant", "sightline")
+# A post's mirror image below the seat hangs over no floor: it is known by its angles alone.
+_NO_FLOOR_MM = 1e5
 _LENGTHS = ("foot_across", "foot_along", "inside_side", "inside_end", "axis")
 
 
@@ -79,7 +81,7 @@ def leg_direction(
 def post_direction(spec: PostSpec, place: Place, seating: Seating) -> Direction:
     """The direction of one post as that of its mirror image below the seat: (x, y, -1) for a post along (x, y, +1)."""
     mirrored = Seating(
-        SeatFrame(-seating.frame.pitch_deg, seating.frame.height_mm),
+        SeatFrame(-seating.frame.pitch_deg, _NO_FLOOR_MM),
         seating.thickness_mm,
         True,
         seating.blank,
@@ -88,9 +90,23 @@ def post_direction(spec: PostSpec, place: Place, seating: Seating) -> Direction:
     knowns = {key: value for key in _ANGLES if (value := getattr(spec, key)) is not None}
     if place.side == 0:
         knowns.pop("splay", None)
+    _enough_of_a_post(knowns, place)
     if set(knowns) == {"splay", "rake"} and spec.angles_from == "plumb":
         return Direction(direction_of(knowns["splay"], knowns["rake"], place.side, place.end))
     return _solved(knowns, place, mirrored, spec.angles_from == "seat", spec.end_diameter, None)
+
+
+def _enough_of_a_post(knowns: Mapping[str, float], place: Place) -> None:
+    """Raises CannotSolve for too little, in terms of what a post is known by."""
+    if place.side == 0:
+        if "sightline" in knowns:
+            rule = "a post on the centre line leans to neither side, so sightline says nothing of it"
+            raise CannotSolve(rule, "leave it out and give one of rake or resultant")
+        if not knowns:
+            raise CannotSolve("nothing says how far the post on the centre line leans", "give one of rake or resultant")
+    elif len(knowns) < 2:
+        said = f"{next(iter(knowns))} alone does not say" if knowns else "nothing says"
+        raise CannotSolve(f"{said} how the post leans", f"give two of {', '.join(_ANGLES)}")
 
 
 def _knowns(spec: LegSpec, side: int) -> dict[str, float]:

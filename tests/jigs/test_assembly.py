@@ -81,7 +81,8 @@ def test_bores_of_two_tables_that_meet_are_reported_at_the_later_one():
 def test_a_foot_above_the_floor_is_refused_with_how_far_the_underside_is_below_it():
     lines = refused(one(splay=0, rake=0), height=100, thickness=120)
     assert lines == [
-        "legs[0]: front stands where the seat's underside is on the floor or below it; raise the seat or lessen the lean"
+        "legs[0]: front stands where the seat's underside is on the floor or below it; "
+        "raise the seat or lessen the lean"
     ]
 
 
@@ -90,7 +91,8 @@ def test_an_underside_that_reaches_the_floor_at_the_back_of_a_pitched_seat_is_re
     lines = refused(legs, pitch=10, height=140, depth=600)
     # 560 mm back the face is 97.2 mm lower, and 45 mm of seat hang 44.3 mm below that.
     assert lines == [
-        "legs[1]: back left stands where the seat's underside is on the floor or below it; raise the seat or lessen the lean"
+        "legs[1]: back left stands where the seat's underside is on the floor or below it; "
+        "raise the seat or lessen the lean"
     ]
 
 

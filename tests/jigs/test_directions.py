@@ -333,7 +333,7 @@ def test_a_rings_feet_stand_on_the_circle_that_is_given(feet, face):
         ({"aim_at": [0, 200, 300], "splay": 4}, ("aim_at and splay both say how the leg leans", "keep aim_at alone")),
         ({"aim_at": [0, 200, 1200], "measured": {"heights": [0, 300], "across": [1, 2], "along": [1, 2]}},
          ("measured and aim_at both say how the leg leans", "keep measured alone, or leave it out")),
-        ({"aim_at": [0, 200, 300]}, ("below the mortise, not above it", "aim at a point more than")),
+        ({"aim_at": [0, 200, 300]}, ("below the mortise, not above it", "or more above the floor")),
         ({"measured": {"heights": [100, 110], "across": [1, 2], "along": [1, 2]}},
          ("the two heights are only 10 mm apart", "measure at least 50 mm apart")),
     ],
@@ -457,3 +457,28 @@ def test_an_outline_of_very_many_parts_is_no_outline_to_stand_inside_of():
         "legs[0]: inside_side is measured to an outline of 300 lines and curves at most, and this one has 400; "
         "simplify it, or give splay and rake"
     )
+
+
+@pytest.mark.parametrize(
+    ("more", "line"),
+    [
+        ({"at": [150, 300], "resultant": 5}, "resultant alone does not say how the post leans; give two of splay, "),
+        (
+            {"at": [0, 300], "sightline": 20, "rake": 5},
+            "a post on the centre line leans to neither side, so sightline ",
+        ),
+    ],
+)
+def test_a_post_is_told_of_what_a_post_is_known_by(more, line):
+    post = {"name": "post", "length": 300, "mortise": 19, **more}
+    found = refusals([{**LEG, "splay": 6, "rake": 5}], width=500, depth=420, tables={"posts": [post]})
+    assert [words.startswith(f"posts[0]: {line}") for words in found] == [True]
+    assert not any(word in found[0] for word in ("foot_along", "inside_end", "axis"))
+
+
+def test_a_post_far_back_on_a_low_pitched_seat_is_none_of_the_floors_business():
+    post = {"name": "post", "at": [60, 800], "mirror": True, "length": 300, "mortise": 19, "angles_from": "seat"}
+    leg = {**LEG, "at": [115, 60], "splay": 6, "rake": 5}
+    made = furnished([leg], height=120, thickness=20, pitch=-10, width=400, depth=850,
+                     tables={"posts": [{**post, "splay": 5, "rake": 8}]})  # fmt: skip
+    assert [part.drill.rake_deg for part in made.posts] == pytest.approx([8.0, 8.0], abs=FORWARD)
