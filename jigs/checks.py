@@ -50,7 +50,7 @@ TIPPING_LOAD_N = 100.0
 UNEQUAL_MM = 1.0
 # A mortise or foot nearer than this to the middle of the seat belongs to neither end.
 ON_MIDDLE_MM = 1e-6
-# Seat heights of the size marks 1 to 6: EN 1729-1.
+# Seat heights of the size marks 1 to 6, which are made for pupils: EN 1729-1. As the range of low seats (practice).
 SIZE_MARKS_MM = (260.0, 310.0, 350.0, 380.0, 430.0, 460.0)
 
 
@@ -71,7 +71,7 @@ SEAT_HEIGHTS = {
     "dining": _inches(17.0, 19.0),
     "counter": _inches(24.0, 26.0),
     "bar": _inches(28.0, 32.0),
-    "low": HeightRange(SIZE_MARKS_MM[0], SIZE_MARKS_MM[-1], "the size marks of EN 1729-1"),
+    "low": HeightRange(SIZE_MARKS_MM[0], SIZE_MARKS_MM[-1], "common practice, after the size marks of EN 1729-1"),
 }
 
 

@@ -25,8 +25,10 @@ def settings(assembly: Assembly) -> dict[str, Any]:
         "posts": [_leg_settings(assembly, post) for post in assembly.posts],
         "spindles": [_leg_settings(assembly, spindle) for spindle in assembly.spindles],
         "stretchers": [stretcher.data() for stretcher in assembly.stretchers],
+        "assembly": assembly_notes(assembly),
         "cut_list": _cut_list(assembly),
         "stability": _stability(assembly),
+        "standing": standing_notes(assembly),
         "warnings": [{"code": c.code, "where": c.where, "text": c.text} for c in cautions(assembly)],
     }
 
@@ -70,6 +72,8 @@ def _leg_settings(assembly: Assembly, leg: Leg) -> dict[str, Any]:
         "drilled_from": leg.drilled,
         "axis_mm": leg.axis_mm,
         "in_seat_mm": leg.in_seat_mm,
+        "diameter_mm": leg.diameter_mm,
+        "foot_diameter_mm": leg.foot_diameter_mm,
         "cut": _cut(assembly, leg),
     }
 

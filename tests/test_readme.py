@@ -99,3 +99,15 @@ def test_the_readme_names_every_key_of_a_spec() -> None:
     told = set(re.findall(r"[a-z_]+", TEXT))
     assert len(keys) > 50
     assert keys <= told, sorted(keys - told)
+
+
+def test_the_readme_names_every_code_of_a_caution() -> None:
+    """Codes are words in small letters that stand where cautions are made."""
+    sources = [path.read_text(encoding="utf-8") for path in (README.parent / "jigs").glob("*.py")]
+    made = re.compile(
+        r'(?:Caution|Finding|_finding)\((?:[\w.\[\]]+, )?"([a-z-]+)"|code = "([a-z-]+)"|"(two-ways|picture)"'
+    )
+    codes = {code for text in sources for found in made.findall(text) for code in found if code}
+    assert len(codes) >= 24
+    told = set(re.findall(r"`([a-z-]+)`", TEXT))
+    assert codes <= told, sorted(codes - told)

@@ -433,7 +433,8 @@ def test_a_seat_height_outside_what_is_usual_for_its_use_is_told():
     assert at(431.8, "dining") == at(460, "low") == []
     assert [code for code, *_ in at(483, "dining")] == [code for code, *_ in at(600, "counter")] == ["seat-height"]
     assert at(470, "low")[0][2] == (
-        "the seat is 470 mm high at its front edge; 260 mm to 460 mm is usual for a low seat (the size marks of "
+        "the seat is 470 mm high at its front edge; 260 mm to 460 mm is usual for a low seat (common practice, "
+        "after the size marks of "
         "EN 1729-1); lower it by 10 mm, or mean it"
     )
 
