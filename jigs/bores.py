@@ -16,6 +16,8 @@ from jigs.frames import Vector, further, nearest_on_segments
 from jigs.legs import Leg
 from jigs.spec import Mortise
 
+# A bit that leans further than this from square skates before it bites (practice).
+STEEP_DEG = 25.0
 # How closely the least wood between two bores is found, and beyond which distance it need not be.
 WEB_TOLERANCE_MM, FAR_MM = 0.01, 15.0
 

@@ -14,13 +14,14 @@ from itertools import combinations
 from typing import TYPE_CHECKING, NamedTuple
 
 from jigs.assembly import Assembly, as_bar, other_face
-from jigs.bores import Section, bored_mm, least_web_mm, mouth_mm, sections, slice_at, web_mm, wood_above_mm
+from jigs.bores import STEEP_DEG, Section, bored_mm, least_web_mm, mouth_mm, sections, slice_at, web_mm, wood_above_mm
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.legs import Face, Leg
 from jigs.names import in_words
 from jigs.problems import Caution
 from jigs.quantities import MM_PER_INCH, format_angle
 from jigs.seats import Blank
+from jigs.spec_base import ON_MIDDLE_MM
 from layout.curves import mapped
 from layout.geometry import Affine
 
@@ -42,14 +43,10 @@ THIN_WEB_MM = 10.0
 THIN_FLOOR_MM = 6.0
 # A mouth wider than its leg by more than this is not filled: far below what a hand fits, far above rounding.
 LOOSE_MM = 0.01
-# A bit that leans further than this from square skates before it bites (practice).
-STEEP_DEG = 25.0
 # A piece that a lighter load than this on the seat's edge lifts is tipped by the hand of someone who rises (practice).
 TIPPING_LOAD_N = 100.0
 # Legs that differ by more cannot be cut alike and levelled by scribing the feet (practice).
 UNEQUAL_MM = 1.0
-# A mortise or foot nearer than this to the middle of the seat belongs to neither end.
-ON_MIDDLE_MM = 1e-6
 # Seat heights of the size marks 1 to 6, which are made for pupils: EN 1729-1. As the range of low seats (practice).
 SIZE_MARKS_MM = (260.0, 310.0, 350.0, 380.0, 430.0, 460.0)
 

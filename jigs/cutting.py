@@ -15,7 +15,7 @@ from jigs.legs import Leg
 from jigs.stretchers import Stretcher
 from jigs.wood import CutRow
 
-# Blanks whose lengths agree so closely are cut to one stop.
+# Blanks whose lengths agree so closely are cut to one stop (practice).
 ALIKE_MM = 0.05
 
 

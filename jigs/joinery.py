@@ -1,7 +1,7 @@
 """Whether stretchers fit: tenons that come through or meet, boring that is too steep, what they run into.
 
-Owns the cautions about stretchers. Imports `stretchers`, `frames`, `names`, `problems`, `quantities`; no drawing. Floor
-frame, mm and degrees, as in `stretchers`.
+Owns the cautions about stretchers. Imports `stretchers`, `bores`, `frames`, `names`, `problems`, `quantities`; no
+drawing. Floor frame, mm and degrees, as in `stretchers`.
 """
 
 from __future__ import annotations
@@ -15,14 +15,13 @@ from typing import NamedTuple
 import numpy as np
 from numpy.typing import NDArray
 
+from jigs.bores import STEEP_DEG
 from jigs.frames import Vector, dot, further, minus, nearest_on_segments, unit
 from jigs.names import in_words
 from jigs.problems import Caution
 from jigs.quantities import Units, format_angle, format_length
 from jigs.stretchers import Member, Stretcher, StretcherEnd
 
-# A bit that leans further than this from square to its leg skates before it bites (practice).
-STEEP_BORE_DEG = 25.0
 # The generators of a tenon that are followed to the far side of its host, and how closely that finds where the first
 # one comes out, for hosts up to 60 mm thick.
 GENERATORS = 360
@@ -75,7 +74,7 @@ def _steep(stretchers: Sequence[Stretcher]) -> Iterator[_Finding]:
     for index, stretcher in enumerate(stretchers):
         for end in stretcher.ends:
             lean = abs(90.0 - end.bore_deg)
-            if lean > STEEP_BORE_DEG:
+            if lean > STEEP_DEG:
                 text = f"{stretcher.name}: the bit leans {format_angle(lean)} from square to {end.host} and will skate"
                 cure = "start the hole square, or bring the joints nearer to one height"
                 yield _finding(index, "stretcher-steep", f"{text}; {cure}")

@@ -16,11 +16,10 @@ from jigs.knowns import MOST_LEAN_DEG, CannotSolve
 from jigs.legs import Axis, AxisRun, Face, Kind, Leg, follow, follow_up, on_local_face
 from jigs.problems import Caution, Problem
 from jigs.spec import ON_CENTRE_LINE_MM, Furniture
+from jigs.spec_base import ON_MIDDLE_MM
 from jigs.spec_legs import LegSpec, Mortise, PostSpec, RingSpec, SpindleSpec
 from layout.geometry import Point
 
-# A mortise this near to the middle of the seat's depth belongs to neither end.
-ON_MIDDLE_MM = 1e-6
 # Slopes that differ by less are one: the solver's own rounding is a thousandth of it.
 SAME_SLOPES = 1e-10
 # A foot's thickness is found when it changes by no more than this; each round brings it a hundred times nearer.

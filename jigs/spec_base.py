@@ -32,6 +32,8 @@ MOST_STRETCHERS = 32
 LONGEST_PATH = 20_000
 # A mortise nearer to the centre line than this is on it.
 ON_CENTRE_LINE_MM = 1e-6
+# A mortise or foot this near to the middle of the seat's depth belongs to neither end.
+ON_MIDDLE_MM = 1e-6
 # Two ways of writing a round seat's diameter agree when they are this close.
 SAME_DIAMETER_MM = 0.01
 

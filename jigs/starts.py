@@ -15,9 +15,10 @@ from jigs.legs import lean_of
 from jigs.quantities import Units, format_length
 from layout.geometry import Point, cos_sin
 
-# Plumb heights measured on a chair lie at least this far apart: at 50 mm, 1 mm is already more than a degree.
+# Plumb heights measured on a chair lie at least this far apart: at 50 mm, 1 mm is already more than a degree
+# (practice).
 LEAST_APART_MM = 50.0
-# A leg on the centre line that is measured to lean sideways by more is no such leg, or was measured wrong.
+# A leg on the centre line that is measured to lean sideways by more is no such leg, or was measured wrong (practice).
 STRAY_DEG = 1.0
 FEWEST_LEGS, MOST_LEGS = 3, 64
 # A leg of a ring nearer than this to the ring's own centre lines is on them.

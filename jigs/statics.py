@@ -254,17 +254,6 @@ class Stability(NamedTuple):
     loads: tuple[EdgeLoad, ...]
     published: PublishedCase | None
 
-    @property
-    def stands(self) -> bool:
-        """Whether the piece stands by itself."""
-        return self.falls is None
-
-    @property
-    def weakest(self) -> EdgeLoad | None:
-        """Where the least load tips it, or None where none does."""
-        tipped = [load for load in self.loads if load.load_n is not None]
-        return min(tipped, key=lambda load: load.load_n or 0.0, default=None)
-
     def data(self) -> list[dict[str, Any]]:
         """The tipping loads as `angles --json` gives them."""
         return [{"at": load.at, "point_mm": list(load.point_mm), "load_n": load.load_n} for load in self.loads]

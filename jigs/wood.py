@@ -63,8 +63,6 @@ SPECIES = {
     "black walnut": Species(0.55, _MEMORY),
     "yellow-poplar": Species(0.42, _MEMORY),
 }
-# None is given, for a wood chosen without being asked for would weigh wrong and look right.
-DEFAULT_SPECIES: str | None = None
 
 
 class UnknownSpeciesError(ValueError):
@@ -138,11 +136,6 @@ def weight_kg(volume_mm3: float, density: float) -> float:
 def board_feet(volume_mm3: float) -> float:
     """In board measure, 144 cubic inches each, unrounded."""
     return volume_mm3 / MM3_PER_BOARD_FOOT
-
-
-def cubic_decimetres(volume_mm3: float) -> float:
-    """In dm³, which are litres; a thousand of them are a cubic metre."""
-    return volume_mm3 * 1e-6
 
 
 def slant_reach_mm(diameter_mm: float, resultant_deg: float, widening: float = 0.0) -> float:

@@ -12,7 +12,7 @@ from shapely import LineString, Point, Polygon, affinity
 
 from jigs.assembly import assemble
 from jigs.bores import Section
-from jigs.checks import SEAT_HEIGHTS, THIN_EDGE_MM, THIN_FLOOR_MM, THIN_WEB_MM, TRIP_MM, cautions
+from jigs.checks import THIN_EDGE_MM, THIN_FLOOR_MM, THIN_WEB_MM, TRIP_MM, cautions
 from jigs.grain import grain_bearing_deg, wood_along_grain_mm
 from jigs.problems import Caution, SpecError
 from jigs.spec import parse_spec
@@ -437,13 +437,6 @@ def test_a_seat_height_outside_what_is_usual_for_its_use_is_told():
         "after the size marks of "
         "EN 1729-1); lower it by 10 mm, or mean it"
     )
-
-
-# Common practice, no source; in inches.
-@pytest.mark.parametrize(("use", "least", "most"), [("dining", 17, 19), ("counter", 24, 26), ("bar", 28, 32)])
-def test_usual_heights_are_those_of_common_practice(use, least, most):
-    assert SEAT_HEIGHTS[use].least_mm == pytest.approx(least * 25.4)
-    assert SEAT_HEIGHTS[use].most_mm == pytest.approx(most * 25.4)
 
 
 def test_a_table_has_no_seat_height():

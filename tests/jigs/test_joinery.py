@@ -10,9 +10,9 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 from scipy.optimize import minimize
 
+from jigs.bores import STEEP_DEG
 from jigs.joinery import (
     MEET_TOLERANCE_MM,
-    STEEP_BORE_DEG,
     THROUGH_TOLERANCE_MM,
     Slab,
     Tenon,
@@ -194,7 +194,7 @@ def test_a_stretcher_without_tenons_has_none_that_meet():
 
 
 def test_a_stretcher_that_rises_steeply_makes_the_bit_skate():
-    for rise, expected in ((math.tan(math.radians(STEEP_BORE_DEG - 1)), []), (0.6, ["stretcher-steep"] * 2)):
+    for rise, expected in ((math.tan(math.radians(STEEP_DEG - 1)), []), (0.6, ["stretcher-steep"] * 2)):
         spec = bar("left", "front left", "back left", heights=(100.0, 100.0 + 220.0 * rise))
         assert codes([spec], plumb_chair()) == expected
     (first, _) = cautions(place([spec], plumb_chair()), plumb_chair())
