@@ -26,8 +26,8 @@ from jigs.stretchers import Member, Stretcher, StretcherEnd
 # one comes out, for hosts up to 60 mm thick.
 GENERATORS = 360
 THROUGH_TOLERANCE_MM = 0.01
-# How closely the overlap of two tenons is found.
-MEET_TOLERANCE_MM = 0.01
+# How closely the overlap of two tenons is found; less than a saw's kerf says nothing.
+MEET_TOLERANCE_MM = 0.1
 
 
 class Slab(NamedTuple):
@@ -160,18 +160,28 @@ def _meeting(stretchers: Sequence[Stretcher], units: Units) -> Iterator[_Finding
 def wood_between_mm(one: Tenon, other: Tenon) -> float:
     """The least wood between two tenons, or minus how far one must move to clear the other.
 
-    It is the widest slot between parallel planes that parts them: sought over all directions, then closer about the
-    best, within MEET_TOLERANCE_MM.
+    It is the widest slot between parallel planes that parts them: sought over all directions, then closer about the two
+    best that lie apart, within MEET_TOLERANCE_MM.
     """
-    best, reach = np.array([0.0, 0.0, 1.0]), math.pi
-    for _ in range(5):
+    directions = _about(np.array([0.0, 0.0, 1.0]), math.pi)
+    widths = _slot_mm(one, other, directions)
+    first = directions[int(np.argmax(widths))]
+    apart = np.where(directions @ first < _APART, widths, -np.inf)
+    return max(_closer_mm(one, other, start) for start in (first, directions[int(np.argmax(apart))]))
+
+
+def _closer_mm(one: Tenon, other: Tenon, best: NDArray[np.float64]) -> float:
+    """The widest slot about a direction."""
+    reach = math.pi
+    for _ in range(_ROUNDS):
+        reach /= _CLOSER
         directions = _about(best, reach)
         best = directions[int(np.argmax(_slot_mm(one, other, directions)))]
-        reach /= 8
     return float(_slot_mm(one, other, best[None, :])[0])
 
 
-_STEPS = 41
+# Directions are looked at in so many steps, each round so much closer; two are apart where their cosine is less.
+_STEPS, _ROUNDS, _CLOSER, _APART = 41, 7, 4.0, 0.99
 
 
 def _about(middle: NDArray[np.float64], reach: float) -> NDArray[np.float64]:
